@@ -1,0 +1,153 @@
+/* Everything flat: one function a region, on a cairo context in logical pixels (the caller scales
+ * for dense displays and for paper). Screen, PNG, SVG and PDF use the same functions, so they
+ * cannot differ. Drawing computes no physics: it shows an ev_sheet.
+ *
+ * Each region adds its hot boxes (what a pointer can hit, what a test can read) and, for plots, its
+ * data-to-pixel map. Sizes, colours and type are those of draw/theme.h. */
+#pragma once
+
+#include "optics/antenna.h"
+#include "optics/budget.h"
+#include "optics/design.h"
+#include "optics/trace.h"
+#include "study/loss_map.h"
+#include "study/verdict.h"
+
+#include <cairo.h>
+
+typedef struct ev_rect {
+    double x, y, width, height;
+} ev_rect;
+
+/* A thing on the sheet: text, a button, a ledger row, a handle... `name` is a dotted address:
+ * "ledger.spillover", "button.move", "field.feed.defocus", "text.verdict.1", "handle.feed",
+ * "plate.aperture". Text boxes carry the place they must lie inside. */
+typedef enum {
+    EV_BOX_TEXT,
+    EV_BOX_BUTTON,
+    EV_BOX_ROW,
+    EV_BOX_FIELD,
+    EV_BOX_HANDLE,
+    EV_BOX_PLOT,
+    EV_BOX_PLACE
+} ev_box_kind;
+
+typedef struct ev_box {
+    char name[80];
+    ev_box_kind kind;
+    ev_rect rect;   /* logical pixels of the page */
+    ev_rect within; /* text: the place it has to lie inside */
+} ev_box;
+
+enum { EV_BOX_CAPACITY = 512 };
+
+typedef struct ev_boxes {
+    ev_box items[EV_BOX_CAPACITY];
+    int count;
+} ev_boxes;
+
+const ev_box *ev_boxes_find(const ev_boxes *boxes, const char *name);
+const ev_box *ev_boxes_hit(const ev_boxes *boxes, double x, double y, ev_box_kind kind);
+
+/* Affine map of a plot: pixel = origin + scale * data, per axis. Section: data are antenna (z, x).
+ */
+typedef struct ev_plot_map {
+    double x0, x_scale, y0, y_scale;
+} ev_plot_map;
+
+/* A field of the Strip: one parameter in hand. */
+typedef struct ev_field {
+    char address[96]; /* parameter address */
+    char label[40];
+    char digits[24], unit[12]; /* "14.0", "mm"; minus is U+2212 */
+    double value, nominal;     /* SI; where the tape stands and where its mark is */
+    double step;               /* SI length of one small tick */
+    bool grabbed;              /* yellow */
+    bool editing;              /* digits show edit text and caret */
+    char edit_text[48];
+    int edit_caret, edit_anchor; /* bytes */
+    char complaint[96];          /* under the field while the text is not legal */
+} ev_field;
+
+enum { EV_FIELD_CAPACITY = 6 };
+
+typedef enum { EV_STAGE_SECTION, EV_STAGE_SPACE } ev_stage_mode;
+typedef enum { EV_PLATE_APERTURE, EV_PLATE_BEAM, EV_PLATE_CUT } ev_plate;
+
+/* Aperture picture data: path error minus its mean, n x n over the aperture's square, NaN outside
+ * and in the hole; row 0 at +x (up), column 0 at -y as seen from the sky. */
+enum { EV_APERTURE_SIDE = 97 };
+
+/* One immutable snapshot: everything a page shows. */
+typedef struct ev_sheet {
+    const ev_design *design;
+    const ev_antenna *antenna;
+    const ev_budget *budget;
+    const ev_verdict *verdict;
+    const ev_budget *kept;       /* NULL: nothing kept */
+    const ev_loss_map *loss_map; /* NULL: not computed yet */
+    const ev_ray *rays;          /* of ev_trace_section or ev_trace_fan */
+    int ray_count;
+    const float *aperture; /* EV_APERTURE_SIDE squared, m; NULL: not drawn */
+    const double *front;   /* path error minus mean at front_x along y = 0, m: the Front */
+    const double *front_x; /* m, antenna x */
+    int front_count;
+    double front_exaggeration; /* the stated factor */
+    int feed;                  /* selected */
+    ev_part part;              /* shown in the Detail */
+    ev_part_axis detail_axis[2];
+    ev_stage_mode stage;
+    ev_plate plate; /* the one shown where there is room for one */
+    bool dark;
+    bool unsaved, can_undo, can_redo, detail, grabbed, stale;
+    char pointed[80]; /* name of the hot box under the pointer, or "" */
+    char notice[160]; /* one line of news: "Undid: feed out", or "" */
+    ev_field fields[EV_FIELD_CAPACITY];
+    int field_count;
+    double zoom;         /* section: 1 = fit */
+    double pan_x, pan_y; /* section: logical pixels */
+} ev_sheet;
+
+/* Places of the regions for a page of width x height logical pixels (at least 1100 x 700). */
+typedef struct ev_page {
+    double width, height;
+    ev_rect bar, verdict, stage, watts, strip, ledger, plates[2];
+    int plate_count; /* plates side by side in the column: 2, or 1 with tabs */
+    ev_rect detail;  /* square of the enlarged circle, inside the stage */
+} ev_page;
+
+ev_page ev_page_layout(double width, double height);
+
+void ev_draw_bar(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+void ev_draw_verdict(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+/* Section to scale with hatching, dimensions, rays, Front, scale bar; without the Detail. */
+void ev_draw_section(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes,
+                     ev_plot_map *map);
+/* What the Stage shows over space: tabs, captions, scale; the 3D picture itself is the window's. */
+void ev_draw_space_notes(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet,
+                         ev_boxes *boxes);
+/* Enlarged circle with rings, ticks, handle, arrow, tangents from `part_x, part_y` (page pixels).
+ * map: data are metres from nominal along detail_axis. */
+void ev_draw_detail(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, double part_x,
+                    double part_y, ev_boxes *boxes, ev_plot_map *map);
+void ev_draw_watts(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+void ev_draw_strip(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+void ev_draw_ledger(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+void ev_draw_aperture(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+
+/* The whole page: what `picture` writes, and the window in section mode. */
+void ev_draw_page(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+
+/* Writes the page to a file by its ending: .png, .svg, .pdf. False with *why when it cannot. */
+bool ev_picture_write(const char *path, double width, double height, double scale,
+                      const ev_sheet *sheet, const char **why);
+
+/* Example scenes to choose from: a grid of small sections with titles. Boxes "scene.0".. */
+typedef struct ev_gallery_item {
+    const ev_design *design;
+    const ev_antenna *antenna;
+    char comment[200]; /* whose problem it is */
+} ev_gallery_item;
+
+void ev_draw_gallery(cairo_t *cairo, double width, double height, bool dark,
+                     const ev_gallery_item *items, int count, const char *pointed, ev_boxes *boxes);

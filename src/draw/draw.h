@@ -37,6 +37,7 @@ typedef struct ev_box {
     ev_box_kind kind;
     ev_rect rect;   /* logical pixels of the page */
     ev_rect within; /* text: the place it has to lie inside */
+    char text[48];  /* text: what is drawn, cut at a whole character */
 } ev_box;
 
 enum { EV_BOX_CAPACITY = 512 };
@@ -47,13 +48,20 @@ typedef struct ev_boxes {
 } ev_boxes;
 
 const ev_box *ev_boxes_find(const ev_boxes *boxes, const char *name);
+/* The last one drawn of a kind that holds the point. */
 const ev_box *ev_boxes_hit(const ev_boxes *boxes, double x, double y, ev_box_kind kind);
 
-/* Affine map of a plot: pixel = origin + scale * data, per axis. Section: data are antenna (z, x).
- */
+/* Affine map of a plot from data (a, b):
+ *     x = x0 + x_scale a + x_cross b,    y = y0 + y_scale b + y_cross a.
+ * Section: data are antenna (z, x) and nothing crosses. Detail: metres from nominal along the
+ * part's own axes, which may stand askew on the page. */
 typedef struct ev_plot_map {
     double x0, x_scale, y0, y_scale;
+    double x_cross, y_cross;
 } ev_plot_map;
+
+void ev_plot_to_page(const ev_plot_map *map, double a, double b, double *x, double *y);
+void ev_plot_to_data(const ev_plot_map *map, double x, double y, double *a, double *b);
 
 /* A field of the Strip: one parameter in hand. */
 typedef struct ev_field {
@@ -71,11 +79,22 @@ typedef struct ev_field {
 
 enum { EV_FIELD_CAPACITY = 6 };
 
+/* An action of the top bar; its box is a button "action.NAME". Only what exists is listed. */
+typedef struct ev_action {
+    const char *name;  /* "save" */
+    const char *label; /* "Save" */
+    int key;           /* byte of `label` to underline: the key that does it; -1 for none */
+    bool enabled;
+} ev_action;
+
+enum { EV_ACTION_CAPACITY = 10 };
+
 typedef enum { EV_STAGE_SECTION, EV_STAGE_SPACE } ev_stage_mode;
 typedef enum { EV_PLATE_APERTURE, EV_PLATE_BEAM, EV_PLATE_CUT } ev_plate;
 
 /* Aperture picture data: path error minus its mean, n x n over the aperture's square, NaN outside
- * and in the hole; row 0 at +x (up), column 0 at -y as seen from the sky. */
+ * and in the hole; row 0 at +x, column 0 at -y. The plate draws it as one faces the dish from the
+ * front: +x up, +y to the left. */
 enum { EV_APERTURE_SIDE = 97 };
 
 /* One immutable snapshot: everything a page shows. */
@@ -106,6 +125,12 @@ typedef struct ev_sheet {
     int field_count;
     double zoom;         /* section: 1 = fit */
     double pan_x, pan_y; /* section: logical pixels */
+    ev_action actions[EV_ACTION_CAPACITY];
+    int action_count;
+    /* Scales held still during a drag; 0: the drawing chooses (ev_sheet_scales). The same goes for
+     * front_exaggeration. */
+    double aperture_range; /* m, path error of the full colour */
+    double ledger_range;   /* dB, width of the stair */
 } ev_sheet;
 
 /* Places of the regions for a page of width x height logical pixels (at least 1100 x 700). */
@@ -118,9 +143,17 @@ typedef struct ev_page {
 
 ev_page ev_page_layout(double width, double height);
 
+/* Fills front_exaggeration, aperture_range and ledger_range with what suits the sheet now, whatever
+ * they held: call it at rest, keep the values while something moves. */
+void ev_sheet_scales(const ev_page *page, ev_sheet *sheet);
+
+/* Every region paints its own ground, but the two that lie over the 3D picture: the space notes and
+ * the Detail. */
 void ev_draw_bar(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_verdict(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
-/* Section to scale with hatching, dimensions, rays, Front, scale bar; without the Detail. */
+/* Section to scale with hatching, dimensions, rays, Front, scale bar; without the Detail. Boxes:
+ * "tab.section", "tab.space" (buttons), "plot.section", and the parts as handles, "part.feed.0",
+ * "part.sub", to grab them where they stand. */
 void ev_draw_section(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes,
                      ev_plot_map *map);
 /* What the Stage shows over space: tabs, captions, scale; the 3D picture itself is the window's. */
@@ -135,10 +168,14 @@ void ev_draw_strip(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, e
 void ev_draw_ledger(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_aperture(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 
-/* The whole page: what `picture` writes, and the window in section mode. */
+/* The whole page: what `picture` writes, and the window. Over space the Stage is left as it was:
+ * clear it, and lay the page over the 3D picture. In the section the Detail, when asked for, hangs
+ * on its part; over space the window adds it, knowing where the part is seen. */
 void ev_draw_page(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 
-/* Writes the page to a file by its ending: .png, .svg, .pdf. False with *why when it cannot. */
+/* Writes the page, as a section, to a file by its ending: .png, .svg, .pdf; `scale` is pixels of
+ * the file per logical pixel (png only). False with *why (a phrase, valid until the next call in
+ * this thread) when it cannot; then nothing is left at `path`. */
 bool ev_picture_write(const char *path, double width, double height, double scale,
                       const ev_sheet *sheet, const char **why);
 
@@ -151,3 +188,6 @@ typedef struct ev_gallery_item {
 
 void ev_draw_gallery(cairo_t *cairo, double width, double height, bool dark,
                      const ev_gallery_item *items, int count, const char *pointed, ev_boxes *boxes);
+
+/* Frees this thread's text layouts; threads other than the first do so by themselves on ending. */
+void ev_draw_release(void);

@@ -1,0 +1,261 @@
+/* Grids from surfaces. Everything is polar: rows outward (or along a horn), columns around. */
+#include "view/mesh.h"
+
+#include <math.h>
+#include <stdlib.h>
+
+enum {
+    MAIN_ROWS = 24,
+    MAIN_COLUMNS = 96,
+    SUB_ROWS = 10,
+    SUB_COLUMNS = 64,
+    HORN_ROWS = 3,
+    HORN_COLUMNS = 32,
+};
+
+static const double horn_efficiency = 0.6; /* of a horn's mouth, to guess its size from its gain */
+
+static bool reserve(ev_mesh *mesh, int rows, int columns, ev_vec3 origin)
+{
+    int count = (rows + 1) * (columns + 1);
+    if (mesh->capacity < count) {
+        ev_mesh_free(mesh);
+        mesh->points = malloc((size_t)count * sizeof *mesh->points);
+        mesh->normals = malloc((size_t)count * sizeof *mesh->normals);
+        mesh->vertices = malloc((size_t)count * sizeof *mesh->vertices);
+        if (!mesh->points || !mesh->normals || !mesh->vertices) {
+            ev_mesh_free(mesh);
+            return false;
+        }
+        mesh->capacity = count;
+    }
+    mesh->rows = rows;
+    mesh->columns = columns;
+    mesh->origin = origin;
+    return true;
+}
+
+void ev_mesh_free(ev_mesh *mesh)
+{
+    free(mesh->points);
+    free(mesh->normals);
+    free(mesh->vertices);
+    *mesh = (ev_mesh){0};
+}
+
+static int index_at(const ev_mesh *mesh, int row, int column)
+{
+    return row * (mesh->columns + 1) + column;
+}
+
+const ev_vec3 *ev_mesh_point(const ev_mesh *mesh, int row, int column)
+{
+    return &mesh->points[index_at(mesh, row, column)];
+}
+
+static void put(ev_mesh *mesh, int row, int column, ev_vec3 point, ev_vec3 normal)
+{
+    int i = index_at(mesh, row, column);
+    ev_vec3 local = ev_vec3_sub(point, mesh->origin);
+    mesh->points[i] = point;
+    mesh->normals[i] = normal;
+    mesh->vertices[i] = (ev_vertex){.position = {(float)local.x, (float)local.y, (float)local.z},
+                                    .normal = {(float)normal.x, (float)normal.y, (float)normal.z}};
+}
+
+/* Aperture coordinates of a grid point, for the shadows and the grid drawn on a surface. */
+static void put_aperture(ev_mesh *mesh, int row, int column, double u, double v, double value)
+{
+    ev_vertex *vertex = &mesh->vertices[index_at(mesh, row, column)];
+    vertex->aperture[0] = (float)u;
+    vertex->aperture[1] = (float)v;
+    vertex->value = (float)value;
+}
+
+static double angle_of(int column, int columns)
+{
+    return 2.0 * EV_PI * (column % columns) / columns;
+}
+
+bool ev_mesh_main(ev_mesh *mesh, const ev_antenna *antenna)
+{
+    ev_vec3 centre = ev_main_point(antenna, antenna->offset, 0.0);
+    if (!reserve(mesh, MAIN_ROWS, MAIN_COLUMNS, centre)) {
+        return false;
+    }
+    double inner = antenna->hole_radius / antenna->radius;
+    for (int row = 0; row <= MAIN_ROWS; ++row) {
+        double r = inner + (1.0 - inner) * row / MAIN_ROWS;
+        for (int column = 0; column <= MAIN_COLUMNS; ++column) {
+            double t = angle_of(column, MAIN_COLUMNS), u = r * cos(t), v = r * sin(t);
+            ev_vec3 point =
+                ev_main_point(antenna, antenna->offset + antenna->radius * u, antenna->radius * v);
+            put(mesh, row, column, point, ev_conic_normal(&antenna->main, point));
+            put_aperture(mesh, row, column, u, v, 0.0);
+        }
+    }
+    return true;
+}
+
+bool ev_mesh_sub(ev_mesh *mesh, const ev_antenna *antenna)
+{
+    const ev_sub *sub = &antenna->sub;
+    if (!reserve(mesh, SUB_ROWS, SUB_COLUMNS, ev_sub_place(sub, sub->rim_centre))) {
+        return false;
+    }
+    for (int row = 0; row <= SUB_ROWS; ++row) {
+        for (int column = 0; column <= SUB_COLUMNS; ++column) {
+            double t = angle_of(column, SUB_COLUMNS), r = (double)row / SUB_ROWS;
+            ev_vec3 point = ev_sub_point(sub, r, t);
+            put(mesh, row, column, point, ev_conic_normal(&sub->placed, point));
+            put_aperture(mesh, row, column, r * cos(t), r * sin(t), 0.0);
+        }
+    }
+    return true;
+}
+
+/* Radius of the mouth that gives the pattern's gain on its axis. */
+static double mouth_radius(const ev_antenna *antenna, const ev_feed *feed)
+{
+    double gain = ev_pattern_at(&feed->pattern, 0.0).e;
+    double radius = antenna->wavelength / (2.0 * EV_PI) * sqrt(fmax(gain, 2.0) / horn_efficiency);
+    double largest = 0.2 * antenna->radius, smallest = antenna->radius / 30.0;
+    return fmax(smallest, fmin(largest, radius));
+}
+
+bool ev_mesh_horn(ev_mesh *mesh, const ev_antenna *antenna, int index)
+{
+    const ev_feed *feed = &antenna->feeds[index];
+    double mouth = mouth_radius(antenna, feed), neck = 0.45 * mouth;
+    /* mouth, throat, neck twice: the horn's profile as (back from the mouth, radius) */
+    const double profile[HORN_ROWS + 1][2] = {
+        {0.0, mouth}, {2.2 * mouth, neck}, {2.2 * mouth, neck}, {4.0 * mouth, neck}};
+    double slope = atan2(mouth - neck, 2.2 * mouth);
+    ev_vec3 front = ev_vec3_along(feed->position, feed->phase_centre, feed->axis);
+    if (!reserve(mesh, HORN_ROWS, HORN_COLUMNS, feed->position)) {
+        return false;
+    }
+    for (int row = 0; row <= HORN_ROWS; ++row) {
+        double lean = row < 2 ? sin(slope) : 0.0;
+        ev_vec3 centre = ev_vec3_along(front, -profile[row][0], feed->axis);
+        for (int column = 0; column <= HORN_COLUMNS; ++column) {
+            double t = angle_of(column, HORN_COLUMNS);
+            ev_vec3 out = ev_vec3_along(ev_vec3_scale(cos(t), feed->ex), sin(t), feed->ey);
+            ev_vec3 normal =
+                ev_vec3_along(ev_vec3_scale(sqrt(1.0 - lean * lean), out), -lean, feed->axis);
+            put(mesh, row, column, ev_vec3_along(centre, profile[row][1], out), normal);
+        }
+    }
+    return true;
+}
+
+double ev_front_stand(const ev_antenna *antenna)
+{
+    double rim = ev_main_point(antenna, antenna->offset + antenna->radius, 0.0).z;
+    double stand = fmax(antenna->focal_length, rim);
+    for (int i = 0; antenna->dual && i < 16; ++i) {
+        stand = fmax(stand, ev_sub_rim_point(&antenna->sub, EV_PI * i / 8.0).z);
+    }
+    for (int i = 0; i < antenna->feed_count; ++i) {
+        stand = fmax(stand, antenna->feeds[i].nominal.z);
+    }
+    return stand + 0.2 * antenna->radius;
+}
+
+/* Bilinear among the cells that have a value; NaN when none has. */
+static double interpolate(const float *picture, double row, double column)
+{
+    int r = (int)floor(row), c = (int)floor(column);
+    double sum = 0.0, weights = 0.0;
+    for (int i = 0; i < 4; ++i) {
+        int y = r + (i >> 1), x = c + (i & 1);
+        if (y < 0 || x < 0 || y >= EV_APERTURE_SIDE || x >= EV_APERTURE_SIDE) {
+            continue;
+        }
+        double value = (double)picture[y * EV_APERTURE_SIDE + x];
+        double weight = (1.0 - fabs(row - y)) * (1.0 - fabs(column - x));
+        if (isfinite(value)) {
+            sum += weight * value;
+            weights += weight;
+        }
+    }
+    return weights > 1e-6 ? sum / weights : NAN;
+}
+
+static double picture_at(const ev_sheet *sheet, double u, double v)
+{
+    double half = 0.5 * EV_APERTURE_SIDE;
+    return interpolate(sheet->aperture, half * (1.0 - u) - 0.5, half * (1.0 + v) - 0.5);
+}
+
+double ev_sheet_path_error(const ev_sheet *sheet, double x, double y)
+{
+    const ev_antenna *antenna = sheet->antenna;
+    double u = (x - antenna->offset) / antenna->radius, v = y / antenna->radius;
+    double r = hypot(u, v), step = 3.0 / EV_APERTURE_SIDE, inner = 1.0 - step;
+    double hole = antenna->hole_radius / antenna->radius + step;
+    double held = r > inner ? inner : r < hole && antenna->hole_radius > 0.0 ? hole : r;
+    if (held == r || r == 0.0) {
+        return picture_at(sheet, u, v);
+    }
+    /* cells at an edge are cut: go on along the radius from two whole ones */
+    double beyond = r > held ? 1.0 : -1.0, k = held / r, k2 = (held - beyond * step) / r;
+    double near_edge = picture_at(sheet, k * u, k * v), further = picture_at(sheet, k2 * u, k2 * v);
+    return near_edge + (near_edge - further) * fabs(r - held) / step;
+}
+
+bool ev_mesh_front(ev_mesh *mesh, const ev_sheet *sheet, double stand)
+{
+    const ev_antenna *antenna = sheet->antenna;
+    ev_vec3 s = sheet->budget->feeds[sheet->feed].wanted;
+    if (!sheet->aperture || !reserve(mesh, MAIN_ROWS, MAIN_COLUMNS, ev_vec3_scale(stand, s))) {
+        return false;
+    }
+    double inner = antenna->hole_radius / antenna->radius;
+    double range = fmax(sheet->aperture_range, 1e-12);
+    for (int row = 0; row <= MAIN_ROWS; ++row) {
+        double r = inner + (1.0 - inner) * row / MAIN_ROWS;
+        for (int column = 0; column <= MAIN_COLUMNS; ++column) {
+            double t = angle_of(column, MAIN_COLUMNS), u = r * cos(t), v = r * sin(t);
+            ev_vec3 foot = {antenna->offset + antenna->radius * u, antenna->radius * v, 0.0};
+            double error = ev_sheet_path_error(sheet, foot.x, foot.y);
+            error = isfinite(error) ? error : 0.0;
+            double along = stand - sheet->front_exaggeration * error - ev_vec3_dot(s, foot);
+            put(mesh, row, column, ev_vec3_along(foot, along, s), s);
+            put_aperture(mesh, row, column, u, v, error / range);
+        }
+    }
+    return true;
+}
+
+void ev_strut_ends(const ev_antenna *antenna, const ev_strip *strip, ev_vec3 *top, ev_vec3 *foot)
+{
+    double c = cos(strip->angle), s = sin(strip->angle);
+    double out = fmin(strip->to, antenna->radius);
+    double height = antenna->feed_count > 0 ? antenna->feeds[0].nominal.z : antenna->focal_length;
+    if (antenna->dual) {
+        height = ev_sub_place(&antenna->sub, antenna->sub.rim_centre).z;
+    }
+    *foot = ev_main_point(antenna, antenna->offset + out * c, out * s);
+    *top = ev_vec3_make(antenna->offset + strip->from * c, strip->from * s, height);
+}
+
+int ev_antenna_extent(const ev_antenna *antenna, ev_vec3 points[EV_EXTENT_CAPACITY])
+{
+    int count = 0;
+    double stand = ev_front_stand(antenna);
+    for (int i = 0; i < 32; ++i) {
+        double t = 2.0 * EV_PI * i / 32.0;
+        double x = antenna->offset + antenna->radius * cos(t), y = antenna->radius * sin(t);
+        points[count++] = ev_main_point(antenna, x, y);
+        points[count++] = ev_vec3_make(x, y, stand);
+        if (antenna->dual) {
+            points[count++] = ev_sub_rim_point(&antenna->sub, t);
+        }
+    }
+    points[count++] = ev_main_point(antenna, antenna->offset, 0.0);
+    for (int i = 0; i < antenna->feed_count; ++i) {
+        points[count++] = antenna->feeds[i].nominal;
+    }
+    return count;
+}

@@ -78,6 +78,9 @@ typedef struct ev_antenna {
 /* Builds a checked design (ev_design_check without errors) at `frequency` (Hz). */
 void ev_antenna_build(const ev_design *design, double frequency, ev_antenna *antenna);
 
+/* Fills antenna->layout; called by ev_antenna_build. */
+void ev_layout_fill(const ev_design *design, ev_antenna *antenna);
+
 /* Up, as a unit vector in the antenna frame: (cos el, 0, sin el). */
 ev_vec3 ev_antenna_up(const ev_antenna *antenna);
 

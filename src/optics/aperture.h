@@ -5,7 +5,8 @@
  * gradient from the closed form of the undisplaced system. The conic is continued beyond its rim.
  *
  * Amplitude: sqrt(dP/dA), P the share of the feed's power, A the projected aperture area, from the
- * Jacobian of the ray map (conservation of power along a tube). */
+ * Jacobian of the ray map (conservation of power along a tube). Path and amplitude belong to the
+ * fixed point P, also for misplaced parts. */
 #pragma once
 
 #include "optics/antenna.h"
@@ -18,21 +19,34 @@ typedef struct ev_sample {
     double path;       /* m, feed over the mirrors to P */
     double density;    /* 1/m^2, dP/dA; 0 where the feed does not light */
     double phase;      /* rad, of the feed's table, + is late */
-    ev_cvec3 field;    /* unit polarization vector after the last reflection */
+    ev_cvec3 arriving; /* unit polarization vector arriving at P */
+    ev_cvec3 field;    /* unit polarization vector after the reflection at P */
     double sub_inside; /* dual: ev_sub_inside(Q), else 1 */
-    bool lit;          /* false when no ray reaches P */
+    bool reached;      /* false when no ray reaches P */
 } ev_sample;
 
+/* The aimed ray of a feed to the main reflector over (x, y). Any (x, y), also outside the rim. */
 ev_sample ev_aperture_sample(const ev_antenna *antenna, int feed, double x, double y);
 
-/* Quadrature nodes over the aperture outside the hole: Gauss in radius, uniform in angle. Fields
- * are separate arrays of `count`. */
-typedef struct ev_nodes {
-    int radial, around, count;
-    double *x, *y, *weight; /* m, m, m^2 */
-    double *path;           /* m */
-    double *density;        /* 1/m^2 */
-    double *phase;          /* rad */
-    double *co;             /* |E_co| / |E| signed for linear, real part of the co field */
-    void *block;            /* one allocation behind all of it */
-} ev_nodes;
+/* Only the path (m) and where the ray left: cheaper, for statistics and roots. NaN if none. */
+double ev_aperture_path(const ev_antenna *antenna, int feed, double x, double y, ev_vec3 *direction,
+                        ev_vec3 *sub_point);
+
+/* Solid angle at the nominal feed focus per projected aperture area (sr/m^2), nominal geometry. */
+double ev_aperture_solid_angle(const ev_antenna *antenna, double x, double y);
+
+/* path - s.P for a sample. */
+double ev_sample_error(const ev_sample *sample, ev_vec3 wanted);
+
+/* Field of the feed in a direction: unit polarization vector, power level (mean over the sphere 1)
+ * and phase (rad). The level is 0 outside the pattern. */
+typedef struct ev_launch {
+    ev_cvec3 field;
+    double level, phase;
+} ev_launch;
+
+ev_launch ev_feed_launch(const ev_antenna *antenna, int feed, ev_vec3 direction);
+
+/* Unit co-polar vector of the feed's polarization for the direction s (Ludwig's third definition:
+ * A. Ludwig, IEEE Trans. AP-21, 1973), x or y, rhcp or lhcp. */
+ev_cvec3 ev_copolar(ev_polarization polarization, ev_vec3 s);

@@ -66,6 +66,7 @@ typedef struct ev_sub_design {
     double interfocal; /* m, prime focus to feed focus */
     double diameter;   /* m, long axis of the geometric rim */
     ev_sub_derived derived;
+    ev_sub_derived older;  /* of the two given, the one given first; derived next (scene/field.c) */
     double axis_tilt;      /* rad; positive moves the feed focus toward -x */
     double oversize;       /* m, added to the radius of the geometric rim */
     ev_vec3 shift;         /* m, antenna frame */

@@ -54,11 +54,13 @@ ev_fate ev_shadow_at(const ev_shadows *shadows, double x, double y);
 typedef struct ev_shadow_interval {
     double from, to;
     ev_fate fate;
+    int from_id, to_id; /* which curve ends it there: equal ids, same make-up */
 } ev_shadow_interval;
 
 int ev_shadow_slice(const ev_shadows *shadows, double phi,
                     ev_shadow_interval intervals[EV_SLICE_CAPACITY]);
 
-/* Angles (rad, rising, in [0, 2 pi]) between which the make-up of a slice does not change: ends of
- * strips, tangents and crossings of outlines. First is 0 and last 2 pi. Returns their number. */
-int ev_shadow_breaks(const ev_shadows *shadows, double *angles, int capacity);
+/* Angles (rad, rising, in [0, 2 pi]; first 0, last 2 pi) near which the make-up of a slice can
+ * change: ends of strips, tangents and extremes of outlines. Crossings between outlines fall
+ * between them and are found by bisection (quadrature.h). Returns their number. */
+int ev_shadow_seeds(const ev_shadows *shadows, double *angles, int capacity);

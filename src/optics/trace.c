@@ -1,0 +1,229 @@
+/* Rays for pictures and listings. Called by the study and the rays command; computes nothing that
+ * a budget depends on. */
+#include "optics/trace.h"
+
+#include <stdlib.h>
+
+/* Height (z) at which a ray over (x, y) meets what shadows it, for the end of the drawn ray. */
+static double shadow_height(const ev_antenna *antenna, ev_fate fate, double x, double y)
+{
+    double r = hypot(x - antenna->offset, y);
+    double top = antenna->dual ? ev_sub_place(&antenna->sub, antenna->sub.rim_centre).z
+                               : antenna->focal_length;
+    if (fate == EV_FATE_SHADOW_SUB)
+        return top;
+    if (fate == EV_FATE_SHADOW_FEED) {
+        double nearest = INFINITY, height = top;
+        for (int i = 0; i < antenna->feed_count; i++) {
+            ev_vec3 at = antenna->feeds[i].position;
+            double away = hypot(x - at.x, y - at.y);
+            if (antenna->feeds[i].body > 0.0 && away < nearest) {
+                nearest = away;
+                height = at.z;
+            }
+        }
+        return height;
+    }
+    /* a strut leans from the dish at its outer radius to the middle at its inner one */
+    double from = 0.0, to = antenna->radius;
+    for (int i = 0; i < antenna->shadows.strip_count; i++) {
+        const ev_strip *strip = &antenna->shadows.strips[i];
+        if (fabs(remainder(atan2(y, x - antenna->offset) - strip->angle, 2.0 * EV_PI)) <
+                0.5 * EV_PI &&
+            r >= strip->from && r <= strip->to) {
+            from = strip->from;
+            to = strip->to;
+        }
+    }
+    double foot = ev_main_point(antenna, x, y).z;
+    double part = to > from ? (to - r) / (to - from) : 1.0;
+    return foot + fmin(1.0, fmax(0.0, part)) * fmax(top - foot, 0.0);
+}
+
+/* The nearest hit in front that lies within the sub's rim. */
+static bool meet_sub(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction, ev_vec3 *hit)
+{
+    double t[2];
+    int count = ev_conic_intersect(&antenna->sub.placed, from, direction, t);
+    for (int i = 0; i < count; i++) {
+        *hit = ev_vec3_along(from, t[i], direction);
+        if (t[i] > 1e-9 && ev_sub_inside(&antenna->sub, *hit) >= -1e-10)
+            return true;
+    }
+    return false;
+}
+
+static bool meet_main(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction, ev_vec3 *hit)
+{
+    double t[2];
+    int count = ev_conic_intersect(&antenna->main, from, direction, t);
+    for (int i = 0; i < count; i++) {
+        if (t[i] <= 1e-9)
+            continue;
+        *hit = ev_vec3_along(from, t[i], direction);
+        return hypot(hit->x - antenna->offset, hit->y) <= antenna->radius * (1.0 + 1e-12);
+    }
+    return false;
+}
+
+static void add_point(ev_ray *ray, ev_vec3 point)
+{
+    ev_vec3 last = ray->points[ray->point_count - 1];
+    if (ray->fate != EV_FATE_PAST_SUB)
+        ray->path += ev_vec3_length(ev_vec3_sub(point, last));
+    ray->points[ray->point_count++] = point;
+}
+
+/* From the main reflector to the plane z = F, or to what stands in the way. */
+static void leave_main(const ev_antenna *antenna, ev_ray *ray)
+{
+    ev_vec3 hit = ray->points[ray->point_count - 1];
+    double height = antenna->focal_length;
+    ray->fate = ev_shadow_at(&antenna->shadows, hit.x, hit.y);
+    if (ray->fate == EV_FATE_PAST_MAIN)
+        return; /* through the hole */
+    ray->path_error = ray->path - ev_vec3_dot(antenna->feeds[ray->feed].wanted, hit);
+    if (ray->fate != EV_FATE_APERTURE)
+        height = shadow_height(antenna, ray->fate, hit.x, hit.y);
+    ev_vec3 normal = ev_conic_normal(&antenna->main, hit);
+    ray->leaving = ev_vec3_reflect(ray->leaving, normal);
+    double t = ray->leaving.z > 1e-6 ? (height - hit.z) / ray->leaving.z : 0.0;
+    ray->points[ray->point_count++] = ev_vec3_along(hit, fmax(t, 0.0), ray->leaving);
+}
+
+ev_ray ev_trace(const ev_antenna *antenna, int feed, ev_vec3 direction)
+{
+    ev_ray ray = {.feed = feed,
+                  .fate = EV_FATE_PAST_MAIN,
+                  .direction = direction,
+                  .leaving = direction,
+                  .points = {antenna->feeds[feed].position},
+                  .point_count = 1,
+                  .path_error = NAN};
+    ev_vec3 hit;
+    if (antenna->dual) {
+        if (!meet_sub(antenna, ray.points[0], direction, &hit)) {
+            ray.fate = EV_FATE_PAST_SUB;
+            ray.path = NAN;
+            return ray;
+        }
+        add_point(&ray, hit);
+        ray.leaving = ev_vec3_reflect(direction, ev_conic_normal(&antenna->sub.placed, hit));
+    }
+    if (!meet_main(antenna, ray.points[ray.point_count - 1], ray.leaving, &hit)) {
+        ray.path = NAN;
+        return ray;
+    }
+    add_point(&ray, hit);
+    leave_main(antenna, &ray);
+    return ray;
+}
+
+/* A direction theta from the feed's axis, phi from its x. */
+static ev_vec3 direction_at(const ev_feed *feed, double theta, double phi)
+{
+    ev_vec3 side = ev_vec3_along(ev_vec3_scale(cos(phi), feed->ex), sin(phi), feed->ey);
+    return ev_vec3_along(ev_vec3_scale(cos(theta), feed->axis), sin(theta), side);
+}
+
+enum { CUMULATIVE_STEPS = 720 };
+
+/* Angle against power share, tabulated once a fan: cum[i] is the share within end (i/steps)^2. */
+static void tabulate(const ev_pattern *pattern, double cumulative[CUMULATIVE_STEPS + 1])
+{
+    double sum = 0.0, last = 0.0;
+    cumulative[0] = 0.0;
+    for (int i = 1; i <= CUMULATIVE_STEPS; i++) {
+        double part = (double)i / CUMULATIVE_STEPS, theta = pattern->end * part * part;
+        double middle = 0.5 * (last + theta);
+        ev_pattern_level level = ev_pattern_at(pattern, middle);
+        sum += 0.25 * (level.e + level.h) * (cos(last) - cos(theta));
+        cumulative[i] = sum;
+        last = theta;
+    }
+    for (int i = 1; i <= CUMULATIVE_STEPS && sum > 0.0; i++)
+        cumulative[i] /= sum;
+}
+
+static double angle_of(const ev_pattern *pattern, const double *cumulative, double share)
+{
+    int low = 0, high = CUMULATIVE_STEPS;
+    while (high - low > 1) {
+        int middle = (low + high) / 2;
+        *(cumulative[middle] < share ? &low : &high) = middle;
+    }
+    double span = cumulative[high] - cumulative[low];
+    double part = low + (span > 0.0 ? (share - cumulative[low]) / span : 0.0);
+    part /= CUMULATIVE_STEPS;
+    return pattern->end * part * part;
+}
+
+int ev_trace_fan(const ev_antenna *antenna, int feed, int count, ev_ray *rays)
+{
+    const ev_feed *source = &antenna->feeds[feed];
+    double cumulative[CUMULATIVE_STEPS + 1];
+    const double golden = EV_PI * (3.0 - sqrt(5.0));
+    tabulate(&source->pattern, cumulative);
+#pragma omp parallel for schedule(static)
+    for (int i = 0; i < count; i++) {
+        double theta = angle_of(&source->pattern, cumulative, (i + 0.5) / count);
+        rays[i] = ev_trace(antenna, feed, direction_at(source, theta, golden * i));
+        rays[i].power = 1.0 / count;
+    }
+    return count;
+}
+
+/* Candidates in the symmetry plane, spaced by the power of the rings that they stand for. */
+enum { CANDIDATES = 1600 };
+
+typedef struct candidate {
+    double theta; /* signed, + toward the feed's side nearest +x */
+    ev_fate fate;
+} candidate;
+
+static ev_vec3 in_plane(const ev_feed *feed, double theta)
+{
+    /* square to the axis within the plane y = 0 as near as the axis allows */
+    ev_vec3 side = ev_vec3_unit(ev_vec3_cross(ev_vec3_make(0.0, 1.0, 0.0), feed->axis));
+    return ev_vec3_along(ev_vec3_scale(cos(theta), feed->axis), sin(theta), side);
+}
+
+static void list_candidates(const ev_antenna *antenna, int feed, candidate *list)
+{
+    const ev_feed *source = &antenna->feeds[feed];
+    double cumulative[CUMULATIVE_STEPS + 1];
+    tabulate(&source->pattern, cumulative);
+    for (int i = 0; i < CANDIDATES; i++) {
+        double share = 2.0 * (i + 0.5) / CANDIDATES - 1.0;
+        double theta = copysign(angle_of(&source->pattern, cumulative, fabs(share)), share);
+        list[i].theta = theta;
+        list[i].fate = ev_trace(antenna, feed, in_plane(source, theta)).fate;
+    }
+}
+
+int ev_trace_section(const ev_antenna *antenna, int feed, int count,
+                     const double shares[EV_FATE_COUNT], ev_ray *rays)
+{
+    candidate *list = malloc(CANDIDATES * sizeof *list);
+    int written = 0;
+    if (!list)
+        abort();
+    list_candidates(antenna, feed, list);
+    for (int fate = 0; fate < EV_FATE_COUNT; fate++) {
+        int found = 0, wanted = (int)lround(shares[fate] * count), next = 0, seen = 0;
+        for (int i = 0; i < CANDIDATES; i++)
+            found += list[i].fate == (ev_fate)fate;
+        for (int i = 0; i < CANDIDATES && next < wanted && found > 0; i++) {
+            if (list[i].fate != (ev_fate)fate)
+                continue;
+            /* the next ray stands in the middle of its part of the fate's candidates */
+            if (seen++ < (int)((next + 0.5) * found / wanted) || written >= count)
+                continue;
+            rays[written] = ev_trace(antenna, feed, in_plane(&antenna->feeds[feed], list[i].theta));
+            rays[written++].power = 1.0 / count;
+            next++;
+        }
+    }
+    free(list);
+    return written;
+}

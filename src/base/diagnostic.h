@@ -1,6 +1,6 @@
 /* Diagnostics: what is wrong, where, what was expected and what to do. Collected in a context that
  * is passed in; nothing below app prints or exits. Tests compare ids, people read the text; every
- * text lives in one table (message.c). */
+ * text lives in one table (message.h). */
 #pragma once
 
 #include <stdbool.h>

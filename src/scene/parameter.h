@@ -29,11 +29,19 @@ typedef struct ev_parameter {
     ev_value_kind kind;
     ev_quantity quantity;
     size_t offset;            /* of the member, from the owner's struct */
+    size_t size;              /* of the member, bytes */
     double low, high;         /* legal range, SI; inclusive */
     double initial;           /* default, SI (choices: the enumerator) */
     const char *const *words; /* EV_VALUE_CHOICE: legal words, NULL-terminated, by enumerator */
     const char *choice;       /* name of the choice group it belongs to, or NULL */
     const char *meaning;      /* one line */
+    const char *example;      /* as it may stand in a file: "1.2 m" */
+    bool required;            /* a file must give it, or a rival of its choice group */
+    int given;                /* its enumerator in the choice group, */
+    size_t given_offset;      /* and where the owner keeps which one is given */
+    int of_three;             /* 0, or 1 + its ev_sub_derived: two of three are given */
+    int list_capacity;        /* 0, or of a list of numbers of which this row is the first */
+    size_t list_count_offset; /* where the owner keeps their number */
 } ev_parameter;
 
 int ev_parameter_count(void);
@@ -56,6 +64,9 @@ void ev_parameter_address(const ev_design *design, ev_parameter_ref ref, char *a
 
 /* Numbers, counts and choices as a double, SI. */
 double ev_parameter_get(const ev_design *design, ev_parameter_ref ref);
+
+/* Whether it follows from others at present: a choice whose rival is given, the third of three. */
+bool ev_parameter_is_derived(const ev_design *design, ev_parameter_ref ref);
 
 /* Sets a number and resolves the design: the member of a choice set last holds. The value is
  * clamped to the legal range. */

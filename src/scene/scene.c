@@ -1,0 +1,144 @@
+/* A scene: document, design, pattern tables and remembered spellings. The only way into and out of
+ * scene files; reading is reader.c's, splicing is writer.c's. */
+#include "scene/scene.h"
+
+#include "base/file.h"
+#include "base/message.h"
+#include "base/text.h"
+#include "scene/assign.h"
+#include "scene/pattern_file.h"
+#include "scene/problem.h"
+#include "scene/reader.h"
+#include "scene/value.h"
+#include "scene/writer.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+struct ev_scene {
+    char *path;            /* "" when it has none yet */
+    ev_document *document; /* NULL when it was never written */
+    ev_design design;
+    ev_pattern_cache *patterns;
+    ev_spelling *spellings;
+};
+
+/* What relative paths start from. */
+static const char *scene_name(const ev_scene *scene)
+{
+    return scene->path[0] || scene->document == NULL ? scene->path : scene->document->name;
+}
+
+/* Gives every feed with a pattern table the table that its path names. */
+static bool attach_tables(ev_pattern_cache *patterns, const char *beside, ev_design *design,
+                          ev_diagnostics *diagnostics)
+{
+    bool right = true;
+    for (int i = 0; i < design->feed_count; i++) {
+        ev_feed_design *feed = &design->feeds[i];
+        feed->table = NULL;
+        if (feed->table_path[0] == 0 || feed->pattern != EV_PATTERN_TABLE)
+            continue;
+        feed->table = ev_pattern_cache_get(patterns, beside, feed->table_path, diagnostics);
+        right = right && feed->table != NULL;
+    }
+    return right;
+}
+
+/* Text to a design that is whole and sound; NULL with diagnostics otherwise. */
+static ev_document *read_document(const char *text, size_t size, const char *name,
+                                  ev_pattern_cache *patterns, ev_design *design,
+                                  ev_diagnostics *diagnostics)
+{
+    ev_document *document = ev_document_parse(text, size, name, diagnostics);
+    if (document == NULL)
+        return NULL;
+    if (ev_design_read(document, design, diagnostics) &&
+        attach_tables(patterns, name, design, diagnostics)) {
+        ev_design_resolve(design);
+        if (ev_design_report(design, document, diagnostics))
+            return document;
+    }
+    ev_document_destroy(document);
+    return NULL;
+}
+
+ev_scene *ev_scene_parse(const char *text, size_t size, const char *name,
+                         ev_diagnostics *diagnostics)
+{
+    ev_scene *scene = ev_allocate(sizeof *scene);
+    scene->path = ev_text_duplicate("", 0);
+    scene->patterns = ev_pattern_cache_create();
+    scene->document = read_document(text, size, name, scene->patterns, &scene->design, diagnostics);
+    if (scene->document)
+        return scene;
+    ev_scene_destroy(scene);
+    return NULL;
+}
+
+static void set_path(ev_scene *scene, const char *path)
+{
+    char *copy = ev_text_duplicate(path, strlen(path));
+    free(scene->path);
+    scene->path = copy;
+}
+
+ev_scene *ev_scene_load(const char *path, ev_diagnostics *diagnostics)
+{
+    size_t size;
+    char *text = ev_file_read(path, EV_DOCUMENT_BYTES, &size, diagnostics);
+    if (text == NULL)
+        return NULL;
+    ev_scene *scene = ev_scene_parse(text, size, path, diagnostics);
+    if (scene)
+        set_path(scene, path);
+    free(text);
+    return scene;
+}
+
+void ev_scene_destroy(ev_scene *scene)
+{
+    if (scene == NULL)
+        return;
+    while (scene->spellings) {
+        ev_spelling *spelling = scene->spellings;
+        scene->spellings = spelling->next;
+        free(spelling);
+    }
+    ev_document_destroy(scene->document);
+    ev_pattern_cache_destroy(scene->patterns);
+    free(scene->path);
+    free(scene);
+}
+
+const char *ev_scene_path(const ev_scene *scene)
+{
+    return scene->path;
+}
+
+const ev_design *ev_scene_design(const ev_scene *scene)
+{
+    return &scene->design;
+}
+
+bool ev_scene_check(const ev_scene *scene, const ev_design *design, ev_diagnostics *diagnostics)
+{
+    return ev_design_report(design, scene->document, diagnostics);
+}
+
+const ev_pattern_table *ev_scene_pattern(ev_scene *scene, const char *path,
+                                         ev_diagnostics *diagnostics)
+{
+    return ev_pattern_cache_get(scene->patterns, scene_name(scene), path, diagnostics);
+}
+
+bool ev_scene_assign(const ev_scene *scene, ev_design *design, int selected_feed,
+                     const char *assignment, ev_diagnostics *diagnostics)
+{
+    ev_design trial = *design;
+    if (!ev_design_assign(&trial, selected_feed, assignment, diagnostics) ||
+        !attach_tables(scene->patterns, scene_name(scene), &trial, diagnostics))
+        return false;
+    *design = trial;
+    return true;
+}

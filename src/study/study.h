@@ -23,7 +23,10 @@ typedef struct ev_study {
     int feed;
     int ray_count;
     ev_ray rays[EV_STUDY_RAY_CAPACITY];
-    double front_x[EV_STUDY_FRONT_COUNT], front[EV_STUDY_FRONT_COUNT]; /* path error minus mean */
+    double front_x[EV_STUDY_FRONT_COUNT],
+        front[EV_STUDY_FRONT_COUNT]; /* path error minus mean, NaN in the hole */
+    /* path error minus mean; row 0 at +x, column 0 at -y; NaN in the hole and well outside the rim
+     */
     float aperture[EV_STUDY_APERTURE_SIDE * EV_STUDY_APERTURE_SIDE];
 } ev_study;
 

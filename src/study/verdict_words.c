@@ -90,20 +90,22 @@ static void say_faults(line *to, const char *who, const ev_verdict *verdict)
     add(to, ": **%.*f dB** lost.", verdict->loss_db < 0.095 ? 2 : 1, verdict->loss_db);
 }
 
+/* "4 mm up, which wins back most of it, and 14 mm toward the dish" */
 static void say_moves(line *to, const ev_design *design, const ev_verdict *verdict)
 {
     char mm[24];
+    bool aside = false; /* an aside is open and the next piece has to close it with a comma */
     add(to, "Move it ");
     for (int i = 0; i < verdict->move_count; i++) {
         const ev_move *move = &verdict->moves[i];
-        const char *joint = i == 0 ? "" : i + 1 == verdict->move_count ? " and " : ", ";
-        add(to, "%s%s mm %s", joint, millimetres(move->by, mm), remedy(design, move));
-        if (i > 0 || verdict->move_count == 1)
-            continue;
-        if (move->wins_db > 0.6 * verdict->loss_db)
-            add(to, ", which wins back most of it,");
-        else if (move->wins_db >= 0.05)
-            add(to, ", which alone wins %.1f dB,", move->wins_db);
+        bool last = i + 1 == verdict->move_count;
+        add(to, "%s", i == 0 ? "" : last ? (aside ? ", and " : " and ") : ", ");
+        add(to, "%s mm %s", millimetres(move->by, mm), remedy(design, move));
+        aside = i == 0 && !last && move->wins_db >= 0.05;
+        if (aside && move->wins_db > 0.6 * verdict->loss_db)
+            add(to, ", which wins back most of it");
+        else if (aside)
+            add(to, ", which alone wins %.1f dB", move->wins_db);
     }
     add(to, ". Then %.1f dBi.", verdict->after_dbi);
 }

@@ -231,6 +231,18 @@ ev_parse_result ev_quantity_parse(ev_quantity quantity, const char *text, double
     return EV_PARSE_OK;
 }
 
+void ev_quantity_unit_of(const char *text, char *unit_text, size_t size)
+{
+    bool negative;
+    long double number;
+    const char *at = skip_sign(skip_spaces(text), &negative);
+    const char *name = skip_spaces(read_magnitude(at, &number));
+    size_t length = strcspn(name, " \t");
+    char copy[32];
+    snprintf(copy, sizeof copy, "%.*s", (int)(length < sizeof copy ? length : 0), name);
+    ev_text_copy(unit_text, size, copy);
+}
+
 typedef struct display {
     const char *unit;
     double scale;
@@ -279,6 +291,22 @@ void ev_quantity_format(ev_quantity quantity, double value, char *digits, size_t
     ev_text_copy(digits, digits_size, signed_text);
 }
 
+/* `precision` significant digits, without an exponent while that is readable. */
+static void write_digits(long double number, int precision, char *text, size_t size)
+{
+    char scientific[64];
+    locale_t c, before = enter_c_locale(&c);
+    snprintf(scientific, sizeof scientific, "%.*Le", precision - 1, number);
+    const char *power = strchr(scientific, 'e');
+    int exponent = power ? atoi(power + 1) : 0;
+    int decimals = precision - 1 - exponent;
+    if (exponent < -6 || exponent > 12)
+        snprintf(text, size, "%.*Lg", precision, number);
+    else
+        snprintf(text, size, "%.*Lf", decimals > 0 ? decimals : 0, number);
+    leave_c_locale(c, before);
+}
+
 void ev_quantity_write(ev_quantity quantity, double value, const char *unit_name, char *text,
                        size_t size)
 {
@@ -288,10 +316,8 @@ void ev_quantity_write(ev_quantity quantity, double value, const char *unit_name
         number = number * u->over / u->times;
     char digits[64], whole[64 + 16];
     for (int precision = 1; precision <= 24; precision++) {
-        locale_t c, before = enter_c_locale(&c);
-        snprintf(digits, sizeof digits, "%.*Lg", precision, number);
-        leave_c_locale(c, before);
-        snprintf(whole, sizeof whole, u ? "%s %s" : "%s", digits, unit_name);
+        write_digits(number, precision, digits, sizeof digits);
+        snprintf(whole, sizeof whole, "%s%s%s", digits, u ? " " : "", u ? unit_name : "");
         double back;
         if (ev_quantity_parse(quantity, whole, &back, NULL) == EV_PARSE_OK && back == value)
             break;

@@ -31,6 +31,9 @@ ev_parse_result ev_quantity_parse(ev_quantity quantity, const char *text, double
 /* "m, mm, cm, km, in, ft": the units a person may write. */
 const char *ev_quantity_units(ev_quantity quantity);
 
+/* The unit that a legal text ends with, as written there: "GHz" of "12 GHz"; "" without one. */
+void ev_quantity_unit_of(const char *text, char *unit, size_t size);
+
 /* Digits and unit in the customary unit for display: lengths in mm below 10 m (else m), GHz
  * or MHz, degrees, dB, K. `resolution` decimals of that unit are chosen for the quantity. A minus
  * is U+2212. */

@@ -252,6 +252,14 @@ static void choose_of_three(ev_sub_design *sub, ev_sub_derived chosen)
     }
 }
 
+double ev_row_list_get(const void *owner, const ev_parameter *row, int index)
+{
+    double value;
+    memcpy(&value, (const char *)member_of(owner, row) + (size_t)index * sizeof value,
+           sizeof value);
+    return value;
+}
+
 void ev_row_choose(void *owner, const ev_parameter *row)
 {
     if (row->choice)
@@ -341,10 +349,10 @@ void ev_field_canonical(const void *owner, const ev_field *field, char *text, si
         for (int i = 0; i < field->part_count; i++)
             add_canonical(ev_row_get(owner, field->part[i]), text, size);
     } else if (row->kind == EV_VALUE_TEXT) {
-        ev_text_copy(text, size, ev_row_text(owner, row));
+        snprintf(text, size, "=%s", ev_row_text(owner, row));
     } else if (row->list_capacity > 0) {
         for (int i = 0; i < ev_row_list_count(owner, row); i++)
-            add_canonical(((const double *)member_of(owner, row))[i], text, size);
+            add_canonical(ev_row_list_get(owner, row, i), text, size);
     } else if (!ev_row_is_derived(owner, row)) {
         add_canonical(ev_row_get(owner, row), text, size);
     }

@@ -56,6 +56,7 @@ double ev_row_get(const void *owner, const ev_parameter *row);
 void ev_row_put(void *owner, const ev_parameter *row, double value);
 const char *ev_row_text(const void *owner, const ev_parameter *row);
 int ev_row_list_count(const void *owner, const ev_parameter *row);
+double ev_row_list_get(const void *owner, const ev_parameter *row, int index);
 
 /* Makes the row the given member of its choice group and, of three, not the derived one. */
 void ev_row_choose(void *owner, const ev_parameter *row);
@@ -68,8 +69,8 @@ void ev_design_settle(ev_design *design);
 const char *ev_row_file_unit(const ev_parameter *row, double value);
 void ev_row_write(const ev_parameter *row, double value, const char *unit, char *text, size_t size);
 
-/* The field's content as one line that differs when, and only when, the content does; "" when it
- * is derived. */
+/* The field's content as one line that differs when, and only when, the content does; "" when, and
+ * only when, it is derived. */
 void ev_field_canonical(const void *owner, const ev_field *field, char *text, size_t size);
 
 /* Whether two designs say the same in every field. */

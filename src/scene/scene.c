@@ -76,6 +76,15 @@ ev_scene *ev_scene_parse(const char *text, size_t size, const char *name,
     return NULL;
 }
 
+ev_scene *ev_scene_create(const ev_design *design)
+{
+    ev_scene *scene = ev_allocate(sizeof *scene);
+    scene->path = ev_text_duplicate("", 0);
+    scene->patterns = ev_pattern_cache_create();
+    scene->design = *design;
+    return scene;
+}
+
 static void set_path(ev_scene *scene, const char *path)
 {
     char *copy = ev_text_duplicate(path, strlen(path));
@@ -140,5 +149,83 @@ bool ev_scene_assign(const ev_scene *scene, ev_design *design, int selected_feed
         !attach_tables(scene->patterns, scene_name(scene), &trial, diagnostics))
         return false;
     *design = trial;
+    return true;
+}
+
+void ev_scene_remember_spelling(ev_scene *scene, const char *address, double value,
+                                const char *text)
+{
+    ev_spelling *spelling = ev_allocate(sizeof *spelling);
+    spelling->value = value;
+    bool fits = ev_text_copy(spelling->address, sizeof spelling->address, address) &&
+                ev_text_copy(spelling->text, sizeof spelling->text, text);
+    if (!fits) {
+        free(spelling);
+        return;
+    }
+    spelling->next = scene->spellings; /* the newest is found first */
+    scene->spellings = spelling;
+}
+
+char *ev_scene_text(const ev_scene *scene, const ev_design *design, size_t *size)
+{
+    if (scene->document == NULL)
+        return ev_document_write(design, scene->spellings, size);
+    return ev_document_splice(scene->document, &scene->design, design, scene->spellings, size);
+}
+
+/* Errors are said, warnings were said when they came up. */
+static bool is_sound(const ev_scene *scene, const ev_design *design, ev_diagnostics *diagnostics)
+{
+    ev_diagnostics silent;
+    ev_diagnostics_init(&silent);
+    bool sound = ev_scene_check(scene, design, &silent);
+    ev_diagnostics_clear(&silent);
+    return sound || ev_scene_check(scene, design, diagnostics);
+}
+
+/* Reads the new text back: nothing may be lost. */
+static ev_document *read_back(ev_scene *scene, const ev_design *design, const char *text,
+                              size_t size, const char *path, ev_diagnostics *diagnostics)
+{
+    ev_design back;
+    ev_diagnostics own;
+    ev_diagnostics_init(&own);
+    ev_document *document = read_document(text, size, path, scene->patterns, &back, &own);
+    if (document == NULL || !ev_design_same(&back, design)) {
+        ev_place place = {.file = path};
+        ev_report(diagnostics, EV_SEVERITY_ERROR, save_unfaithful, &place, path);
+        ev_document_destroy(document);
+        document = NULL;
+    }
+    ev_diagnostics_clear(&own);
+    return document;
+}
+
+bool ev_scene_save(ev_scene *scene, const ev_design *design, const char *path,
+                   ev_diagnostics *diagnostics)
+{
+    const char *target = path ? path : scene->path;
+    size_t size;
+    if (target[0] == 0) {
+        ev_report(diagnostics, EV_SEVERITY_ERROR, save_no_path, NULL, "");
+        return false;
+    }
+    ev_design whole = *design;
+    if (!attach_tables(scene->patterns, target, &whole, diagnostics) ||
+        !is_sound(scene, &whole, diagnostics))
+        return false;
+    char *text = ev_scene_text(scene, &whole, &size);
+    ev_document *document = read_back(scene, &whole, text, size, target, diagnostics);
+    bool saved = document && ev_file_replace(target, text, size, diagnostics);
+    free(text);
+    if (!saved) {
+        ev_document_destroy(document);
+        return false;
+    }
+    ev_document_destroy(scene->document);
+    scene->document = document;
+    scene->design = whole;
+    set_path(scene, target);
     return true;
 }

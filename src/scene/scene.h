@@ -12,6 +12,9 @@ typedef struct ev_scene ev_scene;
 ev_scene *ev_scene_load(const char *path, ev_diagnostics *diagnostics);
 ev_scene *ev_scene_parse(const char *text, size_t size, const char *name,
                          ev_diagnostics *diagnostics);
+
+/* A scene that no file says yet; saving writes a clean one. `design` must be resolved. */
+ev_scene *ev_scene_create(const ev_design *design);
 void ev_scene_destroy(ev_scene *scene);
 
 const char *ev_scene_path(const ev_scene *scene); /* "" when it has none yet */
@@ -27,14 +30,17 @@ bool ev_scene_check(const ev_scene *scene, const ev_design *design, ev_diagnosti
 bool ev_scene_assign(const ev_scene *scene, ev_design *design, int selected_feed,
                      const char *assignment, ev_diagnostics *diagnostics);
 
-/* Remembers how a person spelled a value ("3/8 in"), so that saving writes it so. */
+/* Remembers how a person spelled a value ("3/8 in"), so that saving writes it so, for as long as
+ * that is the parameter's value. */
 void ev_scene_remember_spelling(ev_scene *scene, const char *address, double value,
                                 const char *text);
 
 /* The document with `design` spliced in; malloc'd, *size without the final 0. */
 char *ev_scene_text(const ev_scene *scene, const ev_design *design, size_t *size);
 
-/* Writes that text to `path` (NULL: where it came from) and makes it the scene's document. */
+/* Writes that text to `path` (NULL: where it came from) and makes it the scene's document. What was
+ * written is read back first: false with diagnostics, and no file touched, when the design is not
+ * sound or the text would not say the same design. */
 bool ev_scene_save(ev_scene *scene, const ev_design *design, const char *path,
                    ev_diagnostics *diagnostics);
 

@@ -1,5 +1,7 @@
-/* The program: finds the command and runs it. */
-int main(void)
+/* The program. */
+#include "app/command.h"
+
+int main(int argc, char **argv)
 {
-    return 0;
+    return ev_app_run(argc, argv);
 }

@@ -1,0 +1,58 @@
+/* `evenpath budget`: the ledger as text, JSON or CSV. */
+#include "app/command.h"
+
+#include "report/report.h"
+
+#include <stdlib.h>
+
+/* The numbers of one frequency. */
+typedef struct page {
+    ev_antenna antenna;
+    ev_budget budget;
+    ev_verdict verdict;
+} page;
+
+static void print(const ev_options *options, const ev_report *reports, int count)
+{
+    if (options->json) {
+        ev_report_json(stdout, reports, count);
+    } else if (options->csv) {
+        ev_report_csv(stdout, reports, count);
+    } else {
+        for (int i = 0; i < count; i++) {
+            if (i > 0)
+                fputs("\n\n", stdout);
+            ev_report_text(stdout, &reports[i]);
+        }
+    }
+}
+
+int ev_command_budget(const ev_options *options)
+{
+    ev_loaded loaded;
+    int code = ev_load(options, &loaded);
+    if (code != EV_EXIT_DONE)
+        return code;
+    int count = options->all_frequencies ? loaded.design.frequency_count : 1;
+    page *pages = calloc((size_t)count, sizeof *pages);
+    ev_report *reports = calloc((size_t)count, sizeof *reports);
+    if (!pages || !reports)
+        abort();
+    for (int i = 0; i < count; i++) {
+        page *at = &pages[i];
+        double frequency = loaded.design.frequencies[i];
+        ev_antenna_build(&loaded.design, frequency, &at->antenna);
+        ev_budget_compute(&at->antenna, &at->budget);
+        ev_verdict_find(&loaded.design, frequency, 0, &at->verdict);
+        reports[i] = (ev_report){.design = &loaded.design,
+                                 .antenna = &at->antenna,
+                                 .budget = &at->budget,
+                                 .verdict = &at->verdict,
+                                 .warnings = &loaded.cautions};
+    }
+    print(options, reports, count);
+    free(pages);
+    free(reports);
+    ev_unload(&loaded);
+    return ev_finish_output();
+}

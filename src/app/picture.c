@@ -1,0 +1,99 @@
+/* `evenpath picture`: the page of a scene as PNG, SVG or PDF. */
+#include "app/command.h"
+
+#include "draw/draw.h"
+#include "scene/parameter.h"
+#include "study/study.h"
+
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+enum { SECTION_RAYS = 100 };
+
+/* The Strip of a printed page: where the part stands and what it works with. */
+static void list_fields(const ev_loaded *loaded, ev_sheet *sheet)
+{
+    static const char *const single[] = {"feed.defocus", "feed.shift.x",    "feed.shift.y",
+                                         "frequency",    "feed.edge_taper", "main.surface_rms"};
+    static const char *const dual[] = {"sub.shift.z",  "sub.shift.x", "feed.defocus",
+                                       "feed.shift.x", "frequency",   "main.surface_rms"};
+    const char *const *addresses = loaded->antenna.dual ? dual : single;
+    for (int i = 0; i < EV_FIELD_CAPACITY; i++) {
+        ev_parameter_ref ref;
+        ev_field *field = &sheet->fields[sheet->field_count];
+        if (!ev_parameter_find(&loaded->design, loaded->feed, addresses[i], &ref, NULL))
+            continue;
+        snprintf(field->address, sizeof field->address, "%s", addresses[i]);
+        snprintf(field->label, sizeof field->label, "%s", ref.parameter->label);
+        ev_parameter_format(&loaded->design, ref, field->digits, sizeof field->digits, field->unit,
+                            sizeof field->unit);
+        field->value = field->nominal = ev_parameter_get(&loaded->design, ref);
+        field->step = 1.0;
+        sheet->field_count++;
+    }
+}
+
+static void fill_sheet(const ev_loaded *loaded, const ev_study *study, bool dark, ev_sheet *sheet)
+{
+    *sheet = (ev_sheet){.design = &study->design,
+                        .antenna = &study->antenna,
+                        .budget = &study->budget,
+                        .verdict = &study->verdict,
+                        .rays = study->rays,
+                        .ray_count = study->ray_count,
+                        .aperture = study->aperture,
+                        .front = study->front,
+                        .front_x = study->front_x,
+                        .front_count = EV_STUDY_FRONT_COUNT,
+                        .feed = study->feed,
+                        .detail_axis = {EV_AXIS_OUT, EV_AXIS_UP},
+                        .dark = dark,
+                        .zoom = 1.0};
+    list_fields(loaded, sheet);
+}
+
+/* Where the part sits off its place, the page shows the Detail with its rings. */
+static bool wants_detail(const ev_verdict *verdict)
+{
+    return verdict->move_count > 0;
+}
+
+int ev_command_picture(const ev_options *options)
+{
+    ev_loaded loaded;
+    int code = ev_load(options, &loaded);
+    if (code != EV_EXIT_DONE)
+        return code;
+    ev_study *study = calloc(1, sizeof *study);
+    ev_loss_map *map = calloc(1, sizeof *map);
+    if (!study || !map)
+        abort();
+    ev_study_want want = {.feed = loaded.feed,
+                          .verdict = true,
+                          .aperture = true,
+                          .rays = EV_STUDY_RAYS_SECTION,
+                          .ray_count = SECTION_RAYS};
+    ev_study_compute(&loaded.design, loaded.design.frequencies[0], want, study);
+    ev_sheet sheet;
+    fill_sheet(&loaded, study, options->dark, &sheet);
+    if (wants_detail(&study->verdict)) {
+        sheet.part = study->verdict.moves[0].part;
+        ev_loss_map_compute(&loaded.design, loaded.design.frequencies[0], sheet.part, loaded.feed,
+                            sheet.detail_axis[0], sheet.detail_axis[1], 0.0, map);
+        sheet.loss_map = map;
+        sheet.detail = true;
+    }
+    const char *why = NULL;
+    double width = options->width > 0.0 ? options->width : 1280.0;
+    double height = options->height > 0.0 ? options->height : 800.0;
+    if (!ev_picture_write(options->operands[1], width, height,
+                          options->scale > 0.0 ? options->scale : 1.0, &sheet, &why)) {
+        fprintf(stderr, "evenpath: '%s' was not written: %s\n", options->operands[1], why);
+        code = EV_EXIT_IO;
+    }
+    free(map);
+    free(study);
+    ev_unload(&loaded);
+    return code;
+}

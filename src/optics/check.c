@@ -108,10 +108,10 @@ static double depth_in_mirror(const ev_antenna *antenna, const ev_feed *feed)
         double depth = ev_main_point(antenna, at.x, at.y).z - at.z;
         return over ? depth : at.z < 0.0 ? -at.z : -1.0;
     }
+    /* a hyperboloid's feed sees its outside, an ellipsoid's its inside */
     const ev_sub *sub = &antenna->sub;
-    double side = ev_conic_side(&sub->placed, at); /* < 0 on the side of the prime focus */
-    double behind = sub->shape == EV_SUB_HYPERBOLOID ? -side : side;
-    return behind;
+    bool behind = ev_conic_contains(&sub->placed, at) == (sub->shape == EV_SUB_HYPERBOLOID);
+    return behind ? fabs(ev_conic_side(&sub->placed, at)) : -1.0;
 }
 
 static bool check_feed(report *to, const ev_design *design, int index, double half_extent)

@@ -41,6 +41,12 @@ double ev_conic_side(const ev_conic *conic, ev_vec3 point)
     return 0.5 * conic->curvature * (ev_vec3_dot(x, x) - es * es) - s;
 }
 
+bool ev_conic_contains(const ev_conic *conic, ev_vec3 point)
+{
+    double s = ev_vec3_dot(ev_vec3_sub(point, conic->vertex), conic->axis);
+    return ev_conic_side(conic, point) < 0.0 && (conic->eccentricity <= 1.0 || on_sheet(conic, s));
+}
+
 static ev_vec3 gradient(const ev_conic *conic, ev_vec3 point)
 {
     ev_vec3 x = ev_vec3_sub(point, conic->vertex);

@@ -7,7 +7,7 @@
  *     c (rho^2 + (1 - e^2) s^2) = 2 s ,    c = 1 / (f (1 + e)) ,
  *
  * f being the distance from the vertex to the near focus (at s = +f). The sheet meant is the one
- * through the vertex. */
+ * through the vertex; of an ellipsoid, the half nearer to it. */
 #pragma once
 
 #include "base/vec3.h"
@@ -45,6 +45,9 @@ bool ev_conic_project(const ev_conic *conic, ev_vec3 toward, ev_vec3 *point);
 /* Second fundamental form: curvature of the surface at `point` along the tangent vectors a and b,
  * positive where it bends toward the side of ev_conic_normal. */
 double ev_conic_bend(const ev_conic *conic, ev_vec3 point, ev_vec3 a, ev_vec3 b);
+
+/* Whether a point lies on the near focus's side of the sheet through the vertex. */
+bool ev_conic_contains(const ev_conic *conic, ev_vec3 point);
 
 /* Signed residual of the vertex form times 1/2, in metres: negative on the focus side of the
  * surface near the vertex, 0 on it. */

@@ -19,7 +19,7 @@ static const char *length(double metres, char text[32])
 {
     bool big = fabs(metres) >= 9.9995;
     double value = big ? metres : metres * 1e3, size = fabs(value);
-    int decimals = big ? 3 : size >= 99.95 ? 1 : size >= 0.995 ? 2 : 4;
+    int decimals = big ? 3 : size >= 99.95 ? 1 : size >= 0.995 ? 2 : 3;
     snprintf(text, 32, "%.*f", decimals, value);
     for (char *end = text + strlen(text) - 1; strchr(text, '.') && (*end == '0' || *end == '.');
          end--) {

@@ -1,12 +1,6 @@
 /* Ledger and watts rows. Called by the drawings and the reports, so that all use the same words. */
 #include "study/ledger.h"
 
-static bool has_shadows(const ev_antenna *antenna)
-{
-    const ev_shadows *shadows = &antenna->shadows;
-    return shadows->has_sub || shadows->body_count > 0 || shadows->strip_count > 0;
-}
-
 static bool is_circular(ev_polarization polarization)
 {
     return polarization == EV_POLARIZATION_RHCP || polarization == EV_POLARIZATION_LHCP;
@@ -33,7 +27,7 @@ void ev_ledger_list(const ev_antenna *antenna, const ev_feed_budget *budget, int
         {{"pointing", "Beam off axis", !source->toward_peak, 0.0}, eta->pointing},
         {{"polarization", "Polarization", !is_circular(source->polarization), 0.0},
          eta->polarization},
-        {{"blockage", "Shadows", has_shadows(antenna), 0.0}, eta->blockage},
+        {{"blockage", "Shadows", budget->shadow_share > 0.0, 0.0}, eta->blockage},
         {{"surface", "Surface, rms", true, 0.0}, eta->surface},
         {{"ohmic", "Ohmic loss", true, 0.0}, eta->ohmic},
         {{"mismatch", "Mismatch", true, 0.0}, eta->mismatch},

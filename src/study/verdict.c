@@ -5,7 +5,8 @@
 #include <stddef.h>
 #include <string.h>
 
-static const double worth_db = 0.02; /* a move is worth making, and rounding, from here on */
+static const double worth_db = 0.02; /* a single move is worth making, and rounding to, from here */
+static const double loss_to_name_db = 0.05; /* a part is called misplaced from here on */
 
 const char *ev_verdict_word(ev_verdict_id id)
 {
@@ -14,10 +15,10 @@ const char *ev_verdict_word(ev_verdict_id id)
     return words[id];
 }
 
-/* Largest 1-2-5 step (m) that, missed by half, costs no more than `worth_db`. */
+/* Largest 1-2-5 step (m) whose length costs no more than `worth_db` off the best place. */
 static double rounding_step(double bend)
 {
-    double widest = 2.0 * sqrt(2.0 * worth_db / fmax(bend, 1e-9)), step = 1e-5;
+    double widest = sqrt(2.0 * worth_db / fmax(bend, 1e-9)), step = 1e-5;
     static const double next[] = {2.0, 2.5, 2.0};
     for (int i = 0; step * next[i % 3] <= widest && step < 0.01; i++)
         step *= next[i % 3];
@@ -89,7 +90,7 @@ static void find_moves(const look *at, ev_verdict *verdict)
         ev_best sub = ev_part_best(at->design, at->frequency, EV_PART_SUB, at->feed, all);
         sub_wins = list_moves(at, EV_PART_SUB, &sub, verdict);
     }
-    if (dual && sub_wins >= worth_db && sub_wins >= feed_wins - worth_db) {
+    if (dual && sub_wins >= loss_to_name_db && sub_wins >= feed_wins - worth_db) {
         verdict->id = EV_VERDICT_SUB_MISPLACED;
         verdict->loss_db = sub_wins;
         verdict->feed_only_db = by_feed.move_count > 0 ? by_feed.moves[0].wins_db : 0.0;
@@ -98,7 +99,7 @@ static void find_moves(const look *at, ev_verdict *verdict)
         return;
     }
     *verdict = by_feed;
-    if (feed_wins < worth_db) {
+    if (feed_wins < loss_to_name_db) {
         verdict->move_count = 0;
         return;
     }

@@ -6,7 +6,7 @@
 #include "study/part.h"
 
 typedef enum {
-    EV_VERDICT_IN_PLACE, /* moving wins nothing (under 0.02 dB) */
+    EV_VERDICT_IN_PLACE, /* moving wins nothing (under 0.05 dB) */
     EV_VERDICT_FEED_MISPLACED,
     EV_VERDICT_SUB_MISPLACED,
     EV_VERDICT_AS_MEANT,  /* a feed with a beam of its own, in place for it */

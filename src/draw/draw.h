@@ -167,6 +167,13 @@ void ev_draw_watts(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, e
 void ev_draw_strip(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_ledger(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_aperture(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+/* The hairlines between regions, over all of them. */
+void ev_draw_rules(cairo_t *cairo, const ev_page *page, bool dark);
+
+/* Byte of the edit text of a field under page x: for clicks and selections. */
+int ev_field_byte_at(const ev_page *page, const ev_sheet *sheet, int field, double x);
+/* SI change of the value for a drag of the tape by dx logical pixels. */
+double ev_field_drag(const ev_field *field, double dx);
 
 /* The whole page: what `picture` writes, and the window. Over space the Stage is left as it was:
  * clear it, and lay the page over the 3D picture. In the section the Detail, when asked for, hangs
@@ -183,7 +190,9 @@ bool ev_picture_write(const char *path, double width, double height, double scal
 typedef struct ev_gallery_item {
     const ev_design *design;
     const ev_antenna *antenna;
-    char comment[200]; /* whose problem it is */
+    char comment[200];  /* whose problem it is */
+    const ev_ray *rays; /* a few, or NULL */
+    int ray_count;
 } ev_gallery_item;
 
 void ev_draw_gallery(cairo_t *cairo, double width, double height, bool dark,

@@ -1,0 +1,31 @@
+/* The Detail's own measures, shared by its drawing and its rings. Internal to draw. */
+#pragma once
+
+#include "draw/pen.h"
+
+typedef struct ev_detail {
+    double x, y, radius;     /* of the circle, page */
+    const ev_loss_map *loss; /* NULL: not known yet */
+    double place[2];         /* m, where the part sits along its axes */
+    double extent;           /* m, from the middle of the circle to its edge */
+    double axis[2][2];       /* unit, page: of the two axes */
+    ev_plot_map map;
+} ev_detail;
+
+enum { EV_RING_CAPACITY = 5 };
+
+/* Where the rings found room for their labels, innermost first. */
+typedef struct ev_ring_label {
+    double x, y, width; /* middle, page */
+    char text[16];
+} ev_ring_label;
+
+typedef struct ev_ring_labels {
+    ev_ring_label items[EV_RING_CAPACITY];
+    int count;
+} ev_ring_labels;
+
+/* Rings of equal loss, the ground between them darker the more is lost; their labels apart, to
+ * stand over the axes, those of inner rings going first where two would meet. */
+void ev_rings_draw(ev_pen *pen, const ev_detail *detail, ev_ring_labels *labels);
+void ev_rings_label(ev_pen *pen, const ev_ring_labels *labels);

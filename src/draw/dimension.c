@@ -1,0 +1,81 @@
+/* Dimension lines and the scale bar. Called by the section. */
+#include "draw/stage.h"
+
+#include <math.h>
+
+static const double tip = 6.5;
+
+/* Two halves of a line around its text, or one line with the text beside it. */
+void ev_dimension_level(ev_pen *pen, const char *name, const char *label, double x0, double x1,
+                        double y)
+{
+    ev_colour colour = pen->theme->second;
+    double width = ev_text_width(label, EV_FONT_NOTE), middle = 0.5 * (x0 + x1);
+    bool inside = x1 - x0 > width + 36.0;
+    double gap = inside ? 0.5 * width + 6.0 : 0.0;
+    ev_pen_line(pen, x0, y, middle - gap, y, colour, EV_LINE_DIMENSION, 1.0);
+    ev_pen_line(pen, middle + gap, y, x1, y, colour, EV_LINE_DIMENSION, 1.0);
+    ev_pen_arrow(pen, x0, y, -1.0, 0.0, tip, colour, EV_LINE_DIMENSION);
+    ev_pen_arrow(pen, x1, y, 1.0, 0.0, tip, colour, EV_LINE_DIMENSION);
+    double x = inside ? middle - 0.5 * width : x1 + 8.0;
+    ev_rect region = pen->region;
+    if (x < region.x || x + width > region.x + region.width || y < region.y + 12.0 ||
+        y > region.y + region.height - 8.0)
+        return;
+    ev_text(pen, (ev_words){.name = name,
+                            .string = label,
+                            .font = EV_FONT_NOTE,
+                            .colour = colour,
+                            .x = x,
+                            .width = width + 1.0,
+                            .baseline = y + 4.0,
+                            .halo = true});
+}
+
+void ev_dimension_upright(ev_pen *pen, const char *name, const char *label, double x, double y0,
+                          double y1)
+{
+    ev_colour colour = pen->theme->second;
+    double width = ev_text_width(label, EV_FONT_NOTE), middle = 0.5 * (y0 + y1);
+    ev_rect region = pen->region;
+    /* Zoomed in, the text stays in sight. */
+    middle = fmin(fmax(middle, region.y + 0.5 * width + 40.0),
+                  region.y + region.height - 0.5 * width - 40.0);
+    double gap = 0.5 * width + 6.0;
+    bool inside = x > region.x + 14.0 && x < region.x + region.width && y0 < middle - gap &&
+                  y1 > middle + gap;
+    if (!inside)
+        gap = 0.0;
+    ev_pen_line(pen, x, y0, x, middle - gap, colour, EV_LINE_DIMENSION, 1.0);
+    ev_pen_line(pen, x, middle + gap, x, y1, colour, EV_LINE_DIMENSION, 1.0);
+    ev_pen_arrow(pen, x, y0, 0.0, -1.0, tip, colour, EV_LINE_DIMENSION);
+    ev_pen_arrow(pen, x, y1, 0.0, 1.0, tip, colour, EV_LINE_DIMENSION);
+    if (inside)
+        ev_text(pen, (ev_words){.name = name,
+                                .string = label,
+                                .font = EV_FONT_NOTE,
+                                .colour = colour,
+                                .x = x + 4.0,
+                                .width = width + 2.0,
+                                .baseline = middle,
+                                .upright = true});
+}
+
+/* Three alternating pieces and the length of all; about a hundred pixels. */
+void ev_scale_bar(ev_pen *pen, double x, double y, double scale)
+{
+    double piece = ev_step_below(42.0 / scale), width = 3.0 * piece * scale;
+    ev_pen_fill(pen, (ev_rect){x, y - 2.5, width, 5.0}, 0.0, pen->theme->ink, 1.0);
+    ev_pen_fill(pen, (ev_rect){x + width / 3.0, y - 1.3, width / 3.0, 2.6}, 0.0, pen->theme->ground,
+                1.0);
+    char label[64];
+    ev_format_length(label, sizeof label, 3.0 * piece);
+    ev_text(pen, (ev_words){.name = "text.stage.scale",
+                            .string = label,
+                            .font = EV_FONT_NOTE,
+                            .colour = pen->theme->second,
+                            .x = x + width + 8.0,
+                            .width = 90.0,
+                            .baseline = y + 4.0,
+                            .halo = true});
+}

@@ -1,0 +1,186 @@
+/* The rings of the Detail: lines of equal loss, which are the part's tolerance, seen. */
+#include "draw/contour.h"
+#include "draw/detail.h"
+
+#include <math.h>
+#include <stdio.h>
+
+enum { FINE = 65, PADDED = FINE + 2, LEVEL_COUNT = EV_RING_CAPACITY, SPOT_CAPACITY = 128 };
+
+/* Outermost first. */
+static const double levels_db[LEVEL_COUNT] = {4.0, 2.0, 1.0, 0.5, 0.1};
+
+/* Where a ring may carry its label; the higher the score the better. */
+typedef struct ring_spot {
+    double x, y, score;
+} ring_spot;
+
+typedef struct ring_spots {
+    double width;
+    char text[16];
+    ring_spot items[SPOT_CAPACITY];
+    int count;
+} ring_spots;
+
+typedef struct rings {
+    ev_pen *pen;
+    const ev_detail *detail;
+    int level; /* of the path being gathered, -1 before the first */
+    double handle[2], best[2], heading;
+    ring_spots spots[LEVEL_COUNT];
+} rings;
+
+/* Minus the square root of the loss: nearly straight across a ring, so that lines between samples
+ * fall where they should, and falling outward. The low rim closes every ring at the map's edge. */
+static void sample_field(const ev_loss_map *map, double field[PADDED][PADDED])
+{
+    for (int r = 0; r < PADDED; ++r)
+        for (int c = 0; c < PADDED; ++c) {
+            bool is_rim = r == 0 || c == 0 || r == PADDED - 1 || c == PADDED - 1;
+            double right = map->centre[0] + map->extent * (2.0 * (c - 1) / (FINE - 1) - 1.0);
+            double up = map->centre[1] + map->extent * (2.0 * (r - 1) / (FINE - 1) - 1.0);
+            field[r][c] = is_rim ? -1e6 : -sqrt(fmax(ev_loss_map_at(map, right, up), 0.0));
+        }
+}
+
+static void sample_to_page(const ev_detail *detail, const double point[2], double *x, double *y)
+{
+    const ev_loss_map *map = detail->loss;
+    double right = map->centre[0] + map->extent * (2.0 * (point[0] - 1.0) / (FINE - 1) - 1.0);
+    double up = map->centre[1] + map->extent * (2.0 * (point[1] - 1.0) / (FINE - 1) - 1.0);
+    ev_plot_to_page(&detail->map, right, up, x, y);
+}
+
+/* Darker the more is lost. */
+static ev_colour shade(const ev_theme *theme, int level)
+{
+    static const double shades[LEVEL_COUNT + 1] = {0.19, 0.15, 0.115, 0.08, 0.045, 0.0};
+    return ev_colour_mix(theme->ground, theme->ink, shades[level + 1]);
+}
+
+static void flush_ring(rings *r)
+{
+    if (r->level < 0)
+        return;
+    ev_pen *pen = r->pen;
+    ev_pen_colour(pen, shade(pen->theme, r->level), 1.0);
+    cairo_fill_preserve(pen->cairo);
+    ev_pen_colour(pen, pen->theme->ink, 0.5);
+    cairo_set_line_width(pen->cairo, 0.8);
+    cairo_stroke(pen->cairo);
+}
+
+/* A label stands best where its ring lies beyond the best place as seen from the handle. */
+static void consider_spot(rings *r, ring_spots *spots, double x, double y)
+{
+    const ev_detail *detail = r->detail;
+    double inset = detail->radius - 9.0 - 0.5 * spots->width;
+    if (spots->count == SPOT_CAPACITY || hypot(x - detail->x, y - detail->y) > inset ||
+        hypot(x - r->handle[0], y - r->handle[1]) < EV_HANDLE_RADIUS + 14.0 + 0.5 * spots->width)
+        return;
+    double turn = remainder(atan2(y - r->best[1], x - r->best[0]) - r->heading, 2.0 * EV_PI);
+    spots->items[spots->count++] = (ring_spot){x, y, EV_PI - fabs(turn)};
+}
+
+static void add_ring(void *context, int level, const double (*points)[2], int count, bool closed)
+{
+    rings *r = context;
+    cairo_t *cairo = r->pen->cairo;
+    if (level != r->level) {
+        flush_ring(r);
+        r->level = level;
+    }
+    for (int i = 0; i < count; ++i) {
+        double x, y;
+        sample_to_page(r->detail, points[i], &x, &y);
+        if (i == 0)
+            cairo_move_to(cairo, x, y);
+        else
+            cairo_line_to(cairo, x, y);
+        if (i % 2 == 0)
+            consider_spot(r, &r->spots[level], x, y);
+    }
+    if (closed)
+        cairo_close_path(cairo);
+}
+
+static rings start_rings(ev_pen *pen, const ev_detail *detail)
+{
+    rings r = {.pen = pen, .detail = detail, .level = -1};
+    ev_plot_to_page(&detail->map, detail->place[0], detail->place[1], &r.handle[0], &r.handle[1]);
+    ev_plot_to_page(&detail->map, detail->loss->best[0], detail->loss->best[1], &r.best[0],
+                    &r.best[1]);
+    double dx = r.best[0] - r.handle[0], dy = r.best[1] - r.handle[1];
+    r.heading = hypot(dx, dy) > 3.0 ? atan2(dy, dx) : -2.4;
+    for (int i = 0; i < LEVEL_COUNT; ++i) {
+        ring_spots *spots = &r.spots[i];
+        snprintf(spots->text, sizeof spots->text, levels_db[i] == 1.0 ? "%g dB" : "%g",
+                 levels_db[i]);
+        spots->width = ev_text_width(spots->text, EV_FONT_NOTE_STRONG);
+    }
+    return r;
+}
+
+/* Inner rings choose first; each takes its best spot that is clear of those before it. */
+static void choose_labels(const rings *r, ev_ring_labels *labels)
+{
+    for (int i = LEVEL_COUNT - 1; i >= 0; --i) {
+        const ring_spots *spots = &r->spots[i];
+        ev_ring_label best = {.width = spots->width};
+        double score = -1.0;
+        for (int k = 0; k < spots->count; ++k) {
+            const ring_spot *spot = &spots->items[k];
+            bool clear = spot->score > score;
+            for (int j = 0; clear && j < labels->count; ++j) {
+                const ev_ring_label *other = &labels->items[j];
+                clear = fabs(spot->x - other->x) > 0.5 * (spots->width + other->width) + 5.0 ||
+                        fabs(spot->y - other->y) > 15.0;
+            }
+            if (clear) {
+                score = spot->score;
+                best.x = spot->x;
+                best.y = spot->y;
+            }
+        }
+        if (score < 0.0)
+            continue;
+        snprintf(best.text, sizeof best.text, "%s", spots->text);
+        labels->items[labels->count++] = best;
+    }
+}
+
+void ev_rings_draw(ev_pen *pen, const ev_detail *detail, ev_ring_labels *labels)
+{
+    double field[PADDED][PADDED], levels[LEVEL_COUNT];
+    sample_field(detail->loss, field);
+    for (int i = 0; i < LEVEL_COUNT; ++i)
+        levels[i] = -sqrt(levels_db[i]);
+    rings r = start_rings(pen, detail);
+    ev_pen_colour(pen, shade(pen->theme, -1), 1.0);
+    cairo_paint(pen->cairo);
+    cairo_set_fill_rule(pen->cairo, CAIRO_FILL_RULE_EVEN_ODD);
+    cairo_set_line_join(pen->cairo, CAIRO_LINE_JOIN_ROUND);
+    ev_contour(&field[0][0], PADDED, PADDED, levels, LEVEL_COUNT, add_ring, &r);
+    flush_ring(&r);
+    cairo_set_line_join(pen->cairo, CAIRO_LINE_JOIN_MITER);
+    cairo_set_fill_rule(pen->cairo, CAIRO_FILL_RULE_WINDING);
+    labels->count = 0;
+    choose_labels(&r, labels);
+}
+
+void ev_rings_label(ev_pen *pen, const ev_ring_labels *labels)
+{
+    for (int i = 0; i < labels->count; ++i) {
+        const ev_ring_label *label = &labels->items[i];
+        char name[48];
+        snprintf(name, sizeof name, "text.detail.ring.%d", i);
+        ev_text(pen, (ev_words){.name = name,
+                                .string = label->text,
+                                .font = EV_FONT_NOTE_STRONG,
+                                .colour = pen->theme->ink,
+                                .x = label->x - 0.5 * label->width,
+                                .width = label->width + 1.0,
+                                .baseline = label->y + 4.0,
+                                .halo = true});
+    }
+}

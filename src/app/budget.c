@@ -15,7 +15,7 @@ typedef struct page {
 static void print(const ev_options *options, const ev_report *reports, int count)
 {
     if (options->json) {
-        ev_report_json(stdout, reports, count);
+        ev_report_json(stdout, reports, count, options->all_frequencies);
     } else if (options->csv) {
         ev_report_csv(stdout, reports, count);
     } else {

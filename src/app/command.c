@@ -2,9 +2,11 @@
 #include "app/command.h"
 
 #include "app/options.h"
+#include "base/text.h"
 
 #include <stdio.h>
 #include <string.h>
+#include <unistd.h>
 
 static const ev_command commands[] = {
     {"window", "[SCENE]", "open the window; without a scene, choose from the examples",
@@ -55,6 +57,18 @@ static const ev_command *find_command(const char *word)
     return NULL;
 }
 
+/* A word that is neither a command, an option nor a file, but nearly a command. */
+static int misspelt(const char *word)
+{
+    ev_nearest nearest = {0};
+    for (int i = 0; i < COMMAND_COUNT; i++)
+        ev_nearest_offer(&nearest, word, commands[i].name);
+    if (!ev_nearest_is_plausible(&nearest, word))
+        return EV_EXIT_DONE;
+    return ev_usage_error("there is no command and no file '%s'; did you mean '%s'?", word,
+                          nearest.word);
+}
+
 int ev_app_run(int argc, char **argv)
 {
     const char *first = argc > 1 ? argv[1] : NULL;
@@ -68,9 +82,14 @@ int ev_app_run(int argc, char **argv)
     }
     const ev_command *command = find_command(first);
     int skip = command ? 2 : 1;
+    int code = EV_EXIT_DONE;
+    if (!command && first && first[0] != '-' && access(first, F_OK) != 0)
+        code = misspelt(first);
+    if (code != EV_EXIT_DONE)
+        return code;
     if (!command)
         command = &commands[0];
     ev_options options;
-    int code = ev_options_read(command, argc - skip, argv + skip, &options);
+    code = ev_options_read(command, argc - skip, argv + skip, &options);
     return code == EV_EXIT_DONE ? command->run(&options) : code;
 }

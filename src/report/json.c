@@ -189,10 +189,10 @@ static json_t *whole(const ev_report *report)
     return to;
 }
 
-void ev_report_json(FILE *stream, const ev_report *reports, int count)
+void ev_report_json(FILE *stream, const ev_report *reports, int count, bool as_list)
 {
-    json_t *all = count == 1 ? whole(&reports[0]) : json_array();
-    for (int i = 0; count != 1 && i < count; i++)
+    json_t *all = as_list ? json_array() : whole(&reports[0]);
+    for (int i = 0; as_list && i < count; i++)
         json_array_append_new(all, whole(&reports[i]));
     json_dumpf(all, stream, JSON_INDENT(2) | JSON_REAL_PRECISION(17));
     fputc('\n', stream);

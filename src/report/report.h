@@ -18,9 +18,9 @@ typedef struct ev_report {
     const ev_diagnostics *warnings; /* may be NULL */
 } ev_report;
 
-/* One JSON object for one report, a list for several. Numbers carry 17 digits. Values that do not
+/* One JSON object, or with `as_list` a list of them. Numbers carry 17 digits. Values that do not
  * exist for this antenna are left out. */
-void ev_report_json(FILE *stream, const ev_report *reports, int count);
+void ev_report_json(FILE *stream, const ev_report *reports, int count, bool as_list);
 
 /* One line a feed and frequency under a header; columns are the JSON keys joined with dots. */
 void ev_report_csv(FILE *stream, const ev_report *reports, int count);

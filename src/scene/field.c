@@ -214,14 +214,15 @@ double ev_row_get(const void *owner, const ev_parameter *row)
 void ev_row_put(void *owner, const ev_parameter *row, double value)
 {
     void *member = (char *)owner + row->offset;
-    bool flag = value != 0.0;
-    int whole = (int)value;
-    if (row->kind == EV_VALUE_NUMBER)
+    if (row->kind == EV_VALUE_NUMBER) {
         memcpy(member, &value, sizeof value);
-    else if (row->size == sizeof flag)
+    } else if (row->size == sizeof(bool)) {
+        bool flag = value != 0.0;
         memcpy(member, &flag, sizeof flag);
-    else if (row->kind != EV_VALUE_TEXT)
+    } else if (row->kind != EV_VALUE_TEXT) {
+        int whole = (int)value;
         memcpy(member, &whole, sizeof whole);
+    }
 }
 
 const char *ev_row_text(const void *owner, const ev_parameter *row)

@@ -59,8 +59,14 @@ double ev_ink_sight(const ev_ink *ink, ev_vec3 point, bool of_front)
     return !of_front && blocked_by_front(ink, point, toward, far) ? sight * behind_front : sight;
 }
 
+static uint32_t pack_colour(ev_colour colour)
+{
+    uint32_t r = (uint32_t)lround(255.0 * colour.r), g = (uint32_t)lround(255.0 * colour.g);
+    return r << 16 | g << 8 | (uint32_t)lround(255.0 * colour.b);
+}
+
 /* One piece in device pixels; *along counts them for the dashes. */
-static void add_piece(const ev_ink *ink, ev_pen pen, const double at[4], const double sight[2],
+static void add_piece(const ev_ink *ink, ev_nib nib, const double at[4], const double sight[2],
                       double *along)
 {
     double x0 = (at[0] - ink->place.x) * ink->scale, y0 = (at[1] - ink->place.y) * ink->scale;
@@ -69,18 +75,18 @@ static void add_piece(const ev_ink *ink, ev_pen pen, const double at[4], const d
                                              .y0 = (float)y0,
                                              .x1 = (float)x1,
                                              .y1 = (float)y1,
-                                             .width = (float)(pen.width * ink->scale),
-                                             .alpha0 = (float)(pen.alpha * sight[0]),
-                                             .alpha1 = (float)(pen.alpha * sight[1]),
+                                             .width = (float)(nib.width * ink->scale),
+                                             .alpha0 = (float)(nib.alpha * sight[0]),
+                                             .alpha1 = (float)(nib.alpha * sight[1]),
                                              .start = (float)*along,
-                                             .colour = pen.colour,
-                                             .style = (uint8_t)pen.style,
-                                             .joined_start = pen.joined,
-                                             .joined_end = pen.joined});
+                                             .colour = pack_colour(nib.colour),
+                                             .style = (uint8_t)nib.style,
+                                             .joined_start = nib.joined,
+                                             .joined_end = nib.joined});
     *along += hypot(x1 - x0, y1 - y0);
 }
 
-void ev_ink_curve(const ev_ink *ink, ev_pen pen, const ev_vec3 *points, int count)
+void ev_ink_curve(const ev_ink *ink, ev_nib nib, const ev_vec3 *points, int count)
 {
     double at[4], sight[2], along = 0.0;
     bool have = false;
@@ -92,9 +98,9 @@ void ev_ink_curve(const ev_ink *ink, ev_pen pen, const ev_vec3 *points, int coun
         }
         at[2] = x;
         at[3] = y;
-        sight[1] = pen.cast ? ev_ink_sight(ink, points[i], pen.of_front) : 1.0;
+        sight[1] = nib.cast ? ev_ink_sight(ink, points[i], nib.of_front) : 1.0;
         if (have) {
-            add_piece(ink, pen, at, sight, &along);
+            add_piece(ink, nib, at, sight, &along);
         }
         at[0] = at[2];
         at[1] = at[3];
@@ -103,10 +109,10 @@ void ev_ink_curve(const ev_ink *ink, ev_pen pen, const ev_vec3 *points, int coun
     }
 }
 
-static void ink_row(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh, int row)
+static void ink_row(const ev_ink *ink, ev_nib nib, const ev_mesh *mesh, int row)
 {
-    pen.joined = true;
-    ev_ink_curve(ink, pen, ev_mesh_point(mesh, row, 0), mesh->columns + 1);
+    nib.joined = true;
+    ev_ink_curve(ink, nib, ev_mesh_point(mesh, row, 0), mesh->columns + 1);
 }
 
 /* Which side of the surface the eye is on at a grid point. */
@@ -122,7 +128,7 @@ static ev_vec3 cross_point(const ev_mesh *mesh, int a, int b, double fa, double 
 }
 
 /* The contour through one quad: where its edges change sides. */
-static void ink_quad(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh, const int corner[4])
+static void ink_quad(const ev_ink *ink, ev_nib nib, const ev_mesh *mesh, const int corner[4])
 {
     ev_vec3 ends[4];
     int count = 0;
@@ -134,34 +140,34 @@ static void ink_quad(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh, const i
         }
     }
     if (count == 2) {
-        ev_ink_curve(ink, pen, ends, 2);
+        ev_ink_curve(ink, nib, ends, 2);
     }
 }
 
-static void ink_contour(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh)
+static void ink_contour(const ev_ink *ink, ev_nib nib, const ev_mesh *mesh)
 {
-    pen.joined = true;
+    nib.joined = true;
     int across = mesh->columns + 1;
     for (int row = 0; row < mesh->rows; ++row) {
         for (int column = 0; column < mesh->columns; ++column) {
             int i = row * across + column;
             const int corner[4] = {i, i + 1, i + across + 1, i + across};
-            ink_quad(ink, pen, mesh, corner);
+            ink_quad(ink, nib, mesh, corner);
         }
     }
 }
 
-void ev_ink_outline(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh, bool first, bool last,
+void ev_ink_outline(const ev_ink *ink, ev_nib nib, const ev_mesh *mesh, bool first, bool last,
                     bool contour)
 {
     if (first) {
-        ink_row(ink, pen, mesh, 0);
+        ink_row(ink, nib, mesh, 0);
     }
     if (last) {
-        ink_row(ink, pen, mesh, mesh->rows);
+        ink_row(ink, nib, mesh, mesh->rows);
     }
     if (contour) {
-        ink_contour(ink, pen, mesh);
+        ink_contour(ink, nib, mesh);
     }
 }
 
@@ -175,19 +181,19 @@ static void ink_strut(const ev_ink *ink, const ev_strip *strip)
         ev_vec3 way = ev_vec3_sub(foot, top);
         points[i] = ev_vec3_along(top, 0.995 * i / PIECES, way);
     }
-    double dim = ink->emphasis.active && !ink->emphasis.shadows ? 0.3 : 1.0;
+    double dim = fmax(ink->emphasis.rest, ink->emphasis.fate[EV_FATE_SHADOW_STRUTS]);
     double width = ev_eye_pixels(&ink->eye, top, 2.0 * strip->half_width);
     width = fmax(2.0, fmin(width, 12.0));
-    ev_pen pen = {.width = width + 2.5,
+    ev_nib nib = {.width = width + 2.5,
                   .alpha = 0.9,
-                  .colour = ink->palette.ground,
+                  .colour = ink->theme->ground,
                   .joined = true,
                   .cast = true};
-    ev_ink_curve(ink, pen, points, PIECES + 1);
-    pen.width = width;
-    pen.alpha = 0.95 * dim;
-    pen.colour = ink->palette.ink;
-    ev_ink_curve(ink, pen, points, PIECES + 1);
+    ev_ink_curve(ink, nib, points, PIECES + 1);
+    nib.width = width;
+    nib.alpha = 0.95 * dim;
+    nib.colour = ink->theme->ink;
+    ev_ink_curve(ink, nib, points, PIECES + 1);
 }
 
 void ev_ink_struts(const ev_ink *ink)

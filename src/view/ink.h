@@ -4,22 +4,10 @@
 #pragma once
 
 #include "draw/draw.h"
+#include "draw/stage.h"
 #include "view/camera.h"
 #include "view/mesh.h"
 #include "view/raster.h"
-
-/* Colours of the sheet, 0xRRGGBB. */
-typedef struct ev_palette {
-    uint32_t ground, fill, rule, ink, second, third;
-    uint32_t late, early, past_main, past_sub, hand;
-} ev_palette;
-
-/* What the pointer asks about; everything else goes down to a tenth. */
-typedef struct ev_emphasis {
-    bool active;
-    bool fates[EV_FATE_COUNT]; /* rays in question */
-    bool front, shadows;
-} ev_emphasis;
 
 typedef struct ev_ink {
     const ev_sheet *sheet;
@@ -27,26 +15,26 @@ typedef struct ev_ink {
     ev_rect place; /* of the Stage on the page; strokes count from its corner */
     double scale;  /* device pixels per page pixel */
     double stand;  /* of the Front, m */
-    ev_palette palette;
+    const ev_theme *theme;
     ev_emphasis emphasis;
     ev_strokes *strokes;
 } ev_ink;
 
 /* How a curve is drawn. */
-typedef struct ev_pen {
+typedef struct ev_nib {
     double width; /* page pixels */
     double alpha;
-    uint32_t colour;
+    ev_colour colour;
     ev_stroke_style style;
     bool joined;
     bool cast;     /* dims where something stands before it */
     bool of_front; /* part of the Front, which then does not hide it */
-} ev_pen;
+} ev_nib;
 
-void ev_ink_curve(const ev_ink *ink, ev_pen pen, const ev_vec3 *points, int count);
+void ev_ink_curve(const ev_ink *ink, ev_nib nib, const ev_vec3 *points, int count);
 
 /* Edges of a mesh (its first and last row) and its contour as the eye sees it. */
-void ev_ink_outline(const ev_ink *ink, ev_pen pen, const ev_mesh *mesh, bool first, bool last,
+void ev_ink_outline(const ev_ink *ink, ev_nib nib, const ev_mesh *mesh, bool first, bool last,
                     bool contour);
 
 void ev_ink_rays(const ev_ink *ink);

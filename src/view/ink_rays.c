@@ -3,12 +3,11 @@
 
 #include <math.h>
 
-static const double ray_width = 0.85, ray_alpha = 0.38, lost_alpha = 0.75;
-static const double dimmed = 0.1;
+static const double lost_alpha = 0.75;
 
 static double ray_dim(const ev_ink *ink, const ev_ray *ray)
 {
-    return ink->emphasis.active && !ink->emphasis.fates[ray->fate] ? dimmed : 1.0;
+    return ink->emphasis.fate[ray->fate];
 }
 
 /* Where a ray that reached the aperture ends: on the Front as it is drawn. */
@@ -23,7 +22,7 @@ static ev_vec3 meet_front(const ev_ink *ink, const ev_ray *ray, ev_vec3 from)
     return ev_vec3_along(from, reach, ray->leaving);
 }
 
-static void ink_legs(const ev_ink *ink, ev_pen pen, const ev_ray *ray)
+static void ink_legs(const ev_ink *ink, ev_nib nib, const ev_ray *ray)
 {
     ev_vec3 points[EV_RAY_POINT_CAPACITY + 1];
     int count = ray->point_count;
@@ -34,11 +33,11 @@ static void ink_legs(const ev_ink *ink, ev_pen pen, const ev_ray *ray)
         /* the last point only marks the plane z = F: one straight leg to the Front */
         points[count - 1] = meet_front(ink, ray, ray->points[count - 2]);
     }
-    ev_ink_curve(ink, pen, points, count);
+    ev_ink_curve(ink, nib, points, count);
 }
 
 /* A lost ray goes on from its last point and fades out. */
-static void ink_lost(const ev_ink *ink, ev_pen pen, const ev_ray *ray)
+static void ink_lost(const ev_ink *ink, ev_nib nib, const ev_ray *ray)
 {
     enum { PIECES = 6 };
     double reach = 0.9 * ink->sheet->antenna->radius;
@@ -46,27 +45,27 @@ static void ink_lost(const ev_ink *ink, ev_pen pen, const ev_ray *ray)
     for (int i = 0; i < PIECES; ++i) {
         ev_vec3 ends[2] = {ev_vec3_along(from, reach * i / PIECES, ray->leaving),
                            ev_vec3_along(from, reach * (i + 1) / PIECES, ray->leaving)};
-        ev_pen piece = pen;
-        piece.alpha = pen.alpha * (1.0 - (i + 0.5) / PIECES);
+        ev_nib piece = nib;
+        piece.alpha = nib.alpha * (1.0 - (i + 0.5) / PIECES);
         piece.style = EV_STROKE_SOLID;
         ev_ink_curve(ink, piece, ends, 2);
     }
 }
 
-static ev_pen ray_pen(const ev_ink *ink, const ev_ray *ray)
+static ev_nib ray_nib(const ev_ink *ink, const ev_ray *ray)
 {
-    ev_pen pen = {.width = ray_width, .alpha = ray_alpha, .colour = ink->palette.ink};
+    ev_nib nib = {.width = EV_LINE_RAY, .alpha = EV_RAY_INK, .colour = ink->theme->ink};
     switch (ray->fate) {
     case EV_FATE_PAST_MAIN:
-        pen = (ev_pen){.width = 1.2,
+        nib = (ev_nib){.width = EV_LINE_LOST,
                        .alpha = lost_alpha,
-                       .colour = ink->palette.past_main,
+                       .colour = ink->theme->past_main,
                        .style = EV_STROKE_DASHES};
         break;
     case EV_FATE_PAST_SUB:
-        pen = (ev_pen){.width = 1.4,
+        nib = (ev_nib){.width = 1.4,
                        .alpha = lost_alpha,
-                       .colour = ink->palette.past_sub,
+                       .colour = ink->theme->past_sub,
                        .style = EV_STROKE_DOTS};
         break;
     case EV_FATE_APERTURE:
@@ -76,33 +75,33 @@ static ev_pen ray_pen(const ev_ink *ink, const ev_ray *ray)
     case EV_FATE_COUNT:
         break;
     }
-    pen.alpha *= ray_dim(ink, ray);
-    return pen;
+    nib.alpha *= ray_dim(ink, ray);
+    return nib;
 }
 
 /* The bar at the end of a ray that a shadow stops. */
-static void ink_bar(const ev_ink *ink, ev_pen pen, int first)
+static void ink_bar(const ev_ink *ink, ev_nib nib, int first)
 {
     if (ink->strokes->count > first) {
         ev_stroke last = ink->strokes->items[ink->strokes->count - 1];
-        last.alpha1 = (float)fmin(1.0, 2.0 * pen.alpha);
+        last.alpha1 = (float)fmin(1.0, 2.0 * nib.alpha);
         ev_strokes_add_bar(ink->strokes, last);
     }
 }
 
 static void ink_ray(const ev_ink *ink, const ev_ray *ray)
 {
-    ev_pen pen = ray_pen(ink, ray);
+    ev_nib nib = ray_nib(ink, ray);
     int first = ink->strokes->count;
     if (ray->fate != EV_FATE_PAST_MAIN && ray->fate != EV_FATE_PAST_SUB) {
-        ink_legs(ink, pen, ray);
+        ink_legs(ink, nib, ray);
         if (ray->fate != EV_FATE_APERTURE) {
-            ink_bar(ink, pen, first);
+            ink_bar(ink, nib, first);
         }
         return;
     }
-    ink_legs(ink, pen, ray);
-    ink_lost(ink, pen, ray);
+    ink_legs(ink, nib, ray);
+    ink_lost(ink, nib, ray);
 }
 
 void ev_ink_rays(const ev_ink *ink)
@@ -124,10 +123,10 @@ void ev_ink_even(const ev_ink *ink)
         ev_vec3 foot = {antenna->offset + antenna->radius * cos(t), antenna->radius * sin(t), 0.0};
         points[i] = ev_vec3_along(foot, ink->stand - ev_vec3_dot(s, foot), s);
     }
-    ev_pen pen = {.width = 1.0,
+    ev_nib nib = {.width = 1.0,
                   .alpha = 0.8,
-                  .colour = ink->palette.second,
+                  .colour = ink->theme->second,
                   .style = EV_STROKE_DASHES,
                   .joined = true};
-    ev_ink_curve(ink, pen, points, PIECES + 1);
+    ev_ink_curve(ink, nib, points, PIECES + 1);
 }

@@ -1,6 +1,8 @@
 /* Grids from surfaces. Everything is polar: rows outward (or along a horn), columns around. */
 #include "view/mesh.h"
 
+#include "draw/stage.h"
+
 #include <math.h>
 #include <stdlib.h>
 
@@ -12,8 +14,6 @@ enum {
     HORN_ROWS = 3,
     HORN_COLUMNS = 32,
 };
-
-static const double horn_efficiency = 0.6; /* of a horn's mouth, to guess its size from its gain */
 
 static bool reserve(ev_mesh *mesh, int rows, int columns, ev_vec3 origin)
 {
@@ -114,23 +114,14 @@ bool ev_mesh_sub(ev_mesh *mesh, const ev_antenna *antenna)
     return true;
 }
 
-/* Radius of the mouth that gives the pattern's gain on its axis. */
-static double mouth_radius(const ev_antenna *antenna, const ev_feed *feed)
-{
-    double gain = ev_pattern_at(&feed->pattern, 0.0).e;
-    double radius = antenna->wavelength / (2.0 * EV_PI) * sqrt(fmax(gain, 2.0) / horn_efficiency);
-    double largest = 0.2 * antenna->radius, smallest = antenna->radius / 30.0;
-    return fmax(smallest, fmin(largest, radius));
-}
-
 bool ev_mesh_horn(ev_mesh *mesh, const ev_antenna *antenna, int index)
 {
     const ev_feed *feed = &antenna->feeds[index];
-    double mouth = mouth_radius(antenna, feed), neck = 0.45 * mouth;
+    double mouth = ev_outline_mouth(antenna, feed), neck = 0.43 * mouth;
     /* mouth, throat, neck twice: the horn's profile as (back from the mouth, radius) */
     const double profile[HORN_ROWS + 1][2] = {
-        {0.0, mouth}, {2.2 * mouth, neck}, {2.2 * mouth, neck}, {4.0 * mouth, neck}};
-    double slope = atan2(mouth - neck, 2.2 * mouth);
+        {0.0, mouth}, {1.4 * mouth, neck}, {1.4 * mouth, neck}, {2.95 * mouth, neck}};
+    double slope = atan2(mouth - neck, 1.4 * mouth);
     ev_vec3 front = ev_vec3_along(feed->position, feed->phase_centre, feed->axis);
     if (!reserve(mesh, HORN_ROWS, HORN_COLUMNS, feed->position)) {
         return false;
@@ -182,26 +173,12 @@ static double interpolate(const float *picture, double row, double column)
     return weights > 1e-6 ? sum / weights : NAN;
 }
 
-static double picture_at(const ev_sheet *sheet, double u, double v)
-{
-    double half = 0.5 * EV_APERTURE_SIDE;
-    return interpolate(sheet->aperture, half * (1.0 - u) - 0.5, half * (1.0 + v) - 0.5);
-}
-
 double ev_sheet_path_error(const ev_sheet *sheet, double x, double y)
 {
     const ev_antenna *antenna = sheet->antenna;
+    double half = 0.5 * (EV_APERTURE_SIDE - 1);
     double u = (x - antenna->offset) / antenna->radius, v = y / antenna->radius;
-    double r = hypot(u, v), step = 3.0 / EV_APERTURE_SIDE, inner = 1.0 - step;
-    double hole = antenna->hole_radius / antenna->radius + step;
-    double held = r > inner ? inner : r < hole && antenna->hole_radius > 0.0 ? hole : r;
-    if (held == r || r == 0.0) {
-        return picture_at(sheet, u, v);
-    }
-    /* cells at an edge are cut: go on along the radius from two whole ones */
-    double beyond = r > held ? 1.0 : -1.0, k = held / r, k2 = (held - beyond * step) / r;
-    double near_edge = picture_at(sheet, k * u, k * v), further = picture_at(sheet, k2 * u, k2 * v);
-    return near_edge + (near_edge - further) * fabs(r - held) / step;
+    return interpolate(sheet->aperture, half * (1.0 - u), half * (1.0 + v));
 }
 
 bool ev_mesh_front(ev_mesh *mesh, const ev_sheet *sheet, double stand)

@@ -26,8 +26,7 @@ typedef struct ev_mesh {
 /* All of them replace what the mesh held; false, with an empty mesh, when there is no memory. */
 bool ev_mesh_main(ev_mesh *mesh, const ev_antenna *antenna);
 bool ev_mesh_sub(ev_mesh *mesh, const ev_antenna *antenna);
-/* The horn from its mouth to the end of its neck. Its mouth has the size that the pattern's gain
- * asks for, but never under a thirtieth of the dish, to be seen. */
+/* The horn from its mouth to the end of its neck, as large as on the section. */
 bool ev_mesh_horn(ev_mesh *mesh, const ev_antenna *antenna, int feed);
 /* The wave in the wanted direction, `stand` m along it from the origin, bent by the path error
  * times the sheet's exaggeration; late lags behind. */
@@ -39,8 +38,8 @@ const ev_vec3 *ev_mesh_point(const ev_mesh *mesh, int row, int column);
 /* Where the Front stands along the wanted direction, m: before everything else. */
 double ev_front_stand(const ev_antenna *antenna);
 
-/* Path error minus its mean at (x, y) m of the aperture, from the sheet's aperture picture,
- * continued outward to the rim. */
+/* Path error minus its mean at (x, y) m of the aperture, from the sheet's aperture picture;
+ * NaN in the hole. */
 double ev_sheet_path_error(const ev_sheet *sheet, double x, double y);
 
 /* Ends of a strut copy: near the subreflector or feed, and on the dish. */

@@ -1,0 +1,226 @@
+/* The worker's thread and its slots. */
+#include "view/worker.h"
+
+#include <stdio.h>
+#include <stdlib.h>
+
+typedef struct job_slot {
+    bool waiting, running, answered;
+    ev_job request, answer;
+} job_slot;
+
+struct ev_worker {
+    SDL_Thread *thread;
+    SDL_mutex *mutex;
+    SDL_cond *changed;
+    bool leaving;
+    Uint32 event;
+    job_slot slots[EV_JOB_COUNT];
+    ev_job running; /* the thread's own copy */
+};
+
+static void run_map(ev_job *job)
+{
+    ev_loss_map_compute(&job->design, job->frequency, job->part, job->feed, job->axis[0],
+                        job->axis[1], 0.0, &job->map);
+    job->good = true;
+}
+
+static void run_verdict(ev_job *job)
+{
+    ev_verdict_find(&job->design, job->frequency, job->feed, &job->verdict);
+    job->good = true;
+}
+
+static void run_save(ev_job *job)
+{
+    ev_diagnostics *diagnostics = malloc(sizeof *diagnostics);
+    if (!diagnostics) {
+        job->good = false;
+        snprintf(job->message, sizeof job->message, "no memory to save the scene");
+        return;
+    }
+    ev_diagnostics_init(diagnostics);
+    job->good = ev_scene_save(job->scene, &job->design, *job->path ? job->path : NULL, diagnostics);
+    if (!job->good) {
+        snprintf(job->message, sizeof job->message, "%s",
+                 diagnostics->count > 0 ? diagnostics->items[0].text : "The scene was not saved.");
+    }
+    ev_diagnostics_clear(diagnostics);
+    free(diagnostics);
+}
+
+static void run_picture(ev_job *job)
+{
+    cairo_status_t status = cairo_surface_write_to_png(job->pixels, job->path);
+    cairo_surface_destroy(job->pixels);
+    job->pixels = NULL;
+    job->good = status == CAIRO_STATUS_SUCCESS;
+    if (!job->good) {
+        remove(job->path);
+        snprintf(job->message, sizeof job->message, "%s", cairo_status_to_string(status));
+    }
+}
+
+static void (*const runners[EV_JOB_COUNT])(ev_job *) = {
+    [EV_JOB_MAP] = run_map,
+    [EV_JOB_VERDICT] = run_verdict,
+    [EV_JOB_SAVE] = run_save,
+    [EV_JOB_PICTURE] = run_picture,
+};
+
+/* Files first, they are what a person waits for on leaving; then map, then verdict. */
+static const ev_job_kind order[EV_JOB_COUNT] = {EV_JOB_SAVE, EV_JOB_PICTURE, EV_JOB_MAP,
+                                                EV_JOB_VERDICT};
+
+static int next_kind(const ev_worker *worker)
+{
+    for (int i = 0; i < EV_JOB_COUNT; ++i) {
+        bool file = order[i] == EV_JOB_SAVE || order[i] == EV_JOB_PICTURE;
+        if (worker->slots[order[i]].waiting && (file || !worker->leaving)) {
+            return (int)order[i];
+        }
+    }
+    return -1;
+}
+
+static void announce(const ev_worker *worker)
+{
+    SDL_Event event = {.type = worker->event};
+    SDL_PushEvent(&event);
+}
+
+/* With the mutex held; lets go of it while the work runs. */
+static void run_slot(ev_worker *worker, int kind)
+{
+    job_slot *slot = &worker->slots[kind];
+    worker->running = slot->request;
+    slot->waiting = false;
+    slot->running = true;
+    SDL_UnlockMutex(worker->mutex);
+    runners[kind](&worker->running);
+    SDL_LockMutex(worker->mutex);
+    slot->running = false;
+    slot->answered = true;
+    slot->answer = worker->running;
+    SDL_CondBroadcast(worker->changed);
+    announce(worker);
+}
+
+static int run_worker(void *data)
+{
+    ev_worker *worker = data;
+    SDL_LockMutex(worker->mutex);
+    for (;;) {
+        int kind = next_kind(worker);
+        if (kind >= 0) {
+            run_slot(worker, kind);
+        } else if (worker->leaving) {
+            break;
+        } else {
+            SDL_CondWait(worker->changed, worker->mutex);
+        }
+    }
+    SDL_UnlockMutex(worker->mutex);
+    return 0;
+}
+
+ev_worker *ev_worker_create(void)
+{
+    ev_worker *worker = calloc(1, sizeof *worker);
+    if (!worker) {
+        return NULL;
+    }
+    worker->event = SDL_RegisterEvents(1);
+    worker->mutex = SDL_CreateMutex();
+    worker->changed = SDL_CreateCond();
+    if (worker->mutex && worker->changed) {
+        worker->thread = SDL_CreateThread(run_worker, "worker", worker);
+    }
+    if (!worker->thread) {
+        ev_worker_destroy(worker);
+        return NULL;
+    }
+    return worker;
+}
+
+void ev_worker_destroy(ev_worker *worker)
+{
+    if (worker->thread) {
+        SDL_LockMutex(worker->mutex);
+        worker->leaving = true;
+        SDL_CondBroadcast(worker->changed);
+        SDL_UnlockMutex(worker->mutex);
+        SDL_WaitThread(worker->thread, NULL);
+    }
+    SDL_DestroyCond(worker->changed);
+    SDL_DestroyMutex(worker->mutex);
+    free(worker);
+}
+
+void ev_worker_ask(ev_worker *worker, ev_job_kind kind, const ev_job *job)
+{
+    SDL_LockMutex(worker->mutex);
+    job_slot *slot = &worker->slots[kind];
+    if (slot->waiting && slot->request.pixels) {
+        cairo_surface_destroy(slot->request.pixels);
+    }
+    slot->request = *job;
+    slot->waiting = true;
+    SDL_CondBroadcast(worker->changed);
+    SDL_UnlockMutex(worker->mutex);
+}
+
+bool ev_worker_busy(ev_worker *worker, ev_job_kind kind)
+{
+    SDL_LockMutex(worker->mutex);
+    bool busy = worker->slots[kind].waiting || worker->slots[kind].running;
+    SDL_UnlockMutex(worker->mutex);
+    return busy;
+}
+
+bool ev_worker_fetch(ev_worker *worker, ev_job_kind kind, ev_job *job)
+{
+    SDL_LockMutex(worker->mutex);
+    job_slot *slot = &worker->slots[kind];
+    bool answered = slot->answered;
+    if (answered) {
+        *job = slot->answer;
+        slot->answered = false;
+    }
+    SDL_UnlockMutex(worker->mutex);
+    return answered;
+}
+
+void ev_worker_finish(ev_worker *worker, ev_job_kind kind)
+{
+    SDL_LockMutex(worker->mutex);
+    while (worker->slots[kind].waiting || worker->slots[kind].running) {
+        SDL_CondWait(worker->changed, worker->mutex);
+    }
+    SDL_UnlockMutex(worker->mutex);
+}
+
+static bool is_idle(const ev_worker *worker)
+{
+    for (int i = 0; i < EV_JOB_COUNT; ++i) {
+        if (worker->slots[i].waiting || worker->slots[i].running) {
+            return false;
+        }
+    }
+    return true;
+}
+
+void ev_worker_settle(ev_worker *worker)
+{
+    SDL_LockMutex(worker->mutex);
+    while (!is_idle(worker)) {
+        SDL_CondWait(worker->changed, worker->mutex);
+    }
+    SDL_UnlockMutex(worker->mutex);
+}
+
+Uint32 ev_worker_event(const ev_worker *worker)
+{
+    return worker->event;
+}

@@ -166,7 +166,7 @@ static void draw_figures(ev_pen *pen, const figure *figures, int count, double t
     }
 }
 
-static void draw_heading(ev_pen *pen)
+static void draw_heading(ev_pen *pen, bool even)
 {
     double x = pen->region.x + 22.0, baseline = pen->region.y + 22.5;
     ev_rect head = ev_text(pen, (ev_words){.name = "text.aperture.head",
@@ -178,7 +178,8 @@ static void draw_heading(ev_pen *pen)
                                            .baseline = baseline});
     x = head.x + head.width + 8.0;
     ev_text(pen, (ev_words){.name = "text.aperture.about",
-                            .string = "path error, seen from the sky",
+                            .string = even ? "path error, seen from the sky: all even"
+                                           : "path error, seen from the sky",
                             .font = EV_FONT_NOTE,
                             .colour = pen->theme->second,
                             .x = x,
@@ -195,7 +196,8 @@ void ev_draw_aperture(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet
     int count = list_figures(sheet, figures);
     double rows = (count + 1) / 2;
     ev_aperture_map map = make_map(sheet, page->plates[0], rows * figure_pitch);
-    draw_heading(&pen);
+    draw_heading(&pen,
+                 ev_is_even(sheet->budget->feeds[sheet->feed].path_error.peak_to_valley, sheet));
     if (sheet->stale) {
         ev_pen_fill(&pen,
                     (ev_rect){page->plates[0].x, page->plates[0].y, page->plates[0].width, 2.0},

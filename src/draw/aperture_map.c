@@ -12,14 +12,19 @@
 
 enum { SIDE = EV_APERTURE_SIDE, TONES = 255, LEVELS_A_SIDE = 4 };
 
-double ev_aperture_range(const ev_sheet *sheet)
+static double largest_error(const ev_sheet *sheet)
 {
-    static const double steps[] = {1.0, 1.5, 2.0, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0};
-    double largest = sheet->antenna->wavelength / 50.0;
-    double middle = 0.5 * (SIDE - 1);
+    double largest = 0.0, middle = 0.5 * (SIDE - 1);
     for (int i = 0; sheet->aperture && i < SIDE * SIDE; ++i)
         if (isfinite(sheet->aperture[i]) && hypot(i / SIDE - middle, i % SIDE - middle) <= middle)
             largest = fmax(largest, fabs((double)sheet->aperture[i]));
+    return largest;
+}
+
+double ev_aperture_range(const ev_sheet *sheet)
+{
+    static const double steps[] = {1.0, 1.5, 2.0, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0};
+    double largest = fmax(largest_error(sheet), sheet->antenna->wavelength / 50.0);
     double decade = pow(10.0, floor(log10(largest)));
     for (size_t i = 0; i < sizeof steps / sizeof steps[0]; ++i)
         if (steps[i] * decade >= largest)
@@ -27,33 +32,30 @@ double ev_aperture_range(const ev_sheet *sheet)
     return 10.0 * decade;
 }
 
-/* Beyond the rim the map goes on straight, so that colours and lines reach the rim itself. */
+/* Beyond the last samples, at the rim and in the hole, the map goes on straight for one more, so
+ * that colours and lines reach the edge itself. */
 static void extend_field(double field[SIDE][SIDE])
 {
     static const int step[4][2] = {{0, 1}, {0, -1}, {1, 0}, {-1, 0}};
     double before[SIDE][SIDE];
-    for (int pass = 0; pass < 3; ++pass) {
-        memcpy(before, field, sizeof before);
-        for (int r = 0; r < SIDE; ++r)
-            for (int c = 0; c < SIDE; ++c) {
-                if (!isnan(before[r][c]))
+    memcpy(before, field, sizeof before);
+    for (int r = 0; r < SIDE; ++r)
+        for (int c = 0; c < SIDE; ++c) {
+            double sum = 0.0;
+            int count = 0;
+            for (int k = 0; isnan(before[r][c]) && k < 4; ++k) {
+                int r2 = r + 2 * step[k][0], c2 = c + 2 * step[k][1];
+                if (r2 < 0 || c2 < 0 || r2 >= SIDE || c2 >= SIDE)
                     continue;
-                double sum = 0.0;
-                int count = 0;
-                for (int k = 0; k < 4; ++k) {
-                    int r2 = r + 2 * step[k][0], c2 = c + 2 * step[k][1];
-                    if (r2 < 0 || c2 < 0 || r2 >= SIDE || c2 >= SIDE)
-                        continue;
-                    double on = 2.0 * before[r + step[k][0]][c + step[k][1]] - before[r2][c2];
-                    if (isnan(on))
-                        continue;
+                double on = 2.0 * before[r + step[k][0]][c + step[k][1]] - before[r2][c2];
+                if (!isnan(on)) {
                     sum += on;
                     ++count;
                 }
-                if (count > 0)
-                    field[r][c] = sum / count;
             }
-    }
+            if (count > 0)
+                field[r][c] = sum / count;
+        }
 }
 
 static void load_field(const ev_sheet *sheet, double field[SIDE][SIDE])
@@ -70,10 +72,16 @@ static uint32_t pack_colour(ev_colour colour)
            (uint32_t)lround(255.0 * colour.g) << 8 | (uint32_t)lround(255.0 * colour.b);
 }
 
-static void fill_tones(const ev_theme *theme, uint32_t tones[TONES])
+/* The colours of a theme as pixels, mixed once a thread. */
+static const uint32_t *tones_of(const ev_theme *theme)
 {
-    for (int i = 0; i < TONES; ++i)
-        tones[i] = pack_colour(ev_theme_path_error(theme, 2.0 * i / (TONES - 1) - 1.0));
+    static _Thread_local uint32_t tones[2][TONES];
+    static _Thread_local bool ready[2];
+    int dark = theme == ev_theme_get(true);
+    for (int i = 0; !ready[dark] && i < TONES; ++i)
+        tones[dark][i] = pack_colour(ev_theme_path_error(theme, 2.0 * i / (TONES - 1) - 1.0));
+    ready[dark] = true;
+    return tones[dark];
 }
 
 static void trace_aperture(ev_pen *pen, const ev_aperture_map *map, double hole)
@@ -91,8 +99,7 @@ static void trace_aperture(ev_pen *pen, const ev_aperture_map *map, double hole)
 static void paint_field(ev_pen *pen, const ev_aperture_map *map, double hole,
                         double field[SIDE][SIDE])
 {
-    uint32_t tones[TONES];
-    fill_tones(pen->theme, tones);
+    const uint32_t *tones = tones_of(pen->theme);
     cairo_surface_t *image = cairo_image_surface_create(CAIRO_FORMAT_RGB24, SIDE, SIDE);
     unsigned char *data = cairo_image_surface_get_data(image);
     if (!data) {
@@ -263,7 +270,8 @@ void ev_aperture_picture(ev_pen *pen, const ev_sheet *sheet, const ev_aperture_m
         double field[SIDE][SIDE];
         load_field(sheet, field);
         paint_field(pen, map, hole, field);
-        draw_lines(pen, map, hole, field);
+        if (!ev_is_even(largest_error(sheet), sheet))
+            draw_lines(pen, map, hole, field);
     }
     draw_shadows(pen, map, &sheet->antenna->shadows, hole);
     if (pen->strength < 1.0) {

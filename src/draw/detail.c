@@ -72,6 +72,10 @@ static ev_detail make_detail(const ev_page *page, const ev_sheet *sheet)
         .y_cross = scale * axis[0][1],
     };
     memcpy(detail.axis, axis, sizeof axis);
+    /* At the bottom of the circle, or at its top when the handle is down there. */
+    double hx, hy, low = detail.y + detail.radius;
+    ev_plot_to_page(&detail.map, detail.place[0], detail.place[1], &hx, &hy);
+    detail.words_y = hy > low - 52.0 ? detail.y - detail.radius + 14.0 : low - 14.0;
     return detail;
 }
 
@@ -233,23 +237,19 @@ static void draw_axes(ev_pen *pen, const ev_detail *detail)
     }
 }
 
-/* At the bottom of the circle, or at its top when the handle is down there. */
-static void draw_tick_words(ev_pen *pen, const ev_detail *detail, double handle_y)
+static void draw_tick_words(ev_pen *pen, const ev_detail *detail)
 {
     char text[64], length[48];
     ev_format_length(length, sizeof length, step_of_words(detail->extent));
     snprintf(text, sizeof text, "ticks %s", length);
     double width = ev_text_width(text, EV_FONT_SMALL) + 1.0;
-    bool at_top = handle_y > detail->y + detail->radius - 52.0;
-    double baseline =
-        at_top ? detail->y - detail->radius + 18.0 : detail->y + detail->radius - 10.0;
     ev_text(pen, (ev_words){.name = "text.detail.ticks",
                             .string = text,
                             .font = EV_FONT_SMALL,
                             .colour = pen->theme->second,
                             .x = detail->x - 0.5 * width,
                             .width = width,
-                            .baseline = baseline,
+                            .baseline = detail->words_y + 4.0,
                             .halo = true});
 }
 
@@ -312,7 +312,7 @@ static void draw_inside(ev_pen *pen, const ev_detail *detail, double hx, double 
     if (detail->loss)
         ev_rings_draw(pen, detail, &labels);
     draw_axes(pen, detail);
-    draw_tick_words(pen, detail, hy);
+    draw_tick_words(pen, detail);
     ev_rings_label(pen, &labels);
     if (detail->loss)
         draw_arrow(pen, detail, hx, hy);

@@ -9,6 +9,7 @@ typedef struct ev_detail {
     double place[2];         /* m, where the part sits along its axes */
     double extent;           /* m, from the middle of the circle to its edge */
     double axis[2][2];       /* unit, page: of the two axes */
+    double words_y;          /* page: middle of the line inside that says what a tick is */
     ev_plot_map map;
 } ev_detail;
 

@@ -33,11 +33,13 @@ void ev_dimension_level(ev_pen *pen, const char *name, const char *label, double
 }
 
 void ev_dimension_upright(ev_pen *pen, const char *name, const char *label, double x, double y0,
-                          double y1)
+                          double y1, double avoid)
 {
     ev_colour colour = pen->theme->second;
     double width = ev_text_width(label, EV_FONT_NOTE), middle = 0.5 * (y0 + y1);
     ev_rect region = pen->region;
+    if (fabs(middle - avoid) < 0.5 * width + 10.0)
+        middle = avoid - 0.5 * width - 24.0;
     /* Zoomed in, the text stays in sight. */
     middle = fmin(fmax(middle, region.y + 0.5 * width + 40.0),
                   region.y + region.height - 0.5 * width - 40.0);
@@ -61,10 +63,11 @@ void ev_dimension_upright(ev_pen *pen, const char *name, const char *label, doub
                                 .upright = true});
 }
 
-/* Three alternating pieces and the length of all; about a hundred pixels. */
+/* Three alternating pieces and the length of all; about a hundred pixels on a small Stage. */
 void ev_scale_bar(ev_pen *pen, double x, double y, double scale)
 {
-    double piece = ev_step_below(42.0 / scale), width = 3.0 * piece * scale;
+    double target = 42.0 * fmax(1.0, pen->region.height / 542.0);
+    double piece = ev_step_below(target / scale), width = 3.0 * piece * scale;
     ev_pen_fill(pen, (ev_rect){x, y - 2.5, width, 5.0}, 0.0, pen->theme->ink, 1.0);
     ev_pen_fill(pen, (ev_rect){x + width / 3.0, y - 1.3, width / 3.0, 2.6}, 0.0, pen->theme->ground,
                 1.0);

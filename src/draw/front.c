@@ -33,6 +33,11 @@ static double largest_error(const ev_sheet *sheet)
     return largest;
 }
 
+bool ev_is_even(double error, const ev_sheet *sheet)
+{
+    return !(error >= sheet->antenna->wavelength / 500.0);
+}
+
 double ev_front_factor(const ev_sheet *sheet, double scale, double room)
 {
     /* An error of under a fiftieth of a wavelength shows as what it is: a flat front. */
@@ -40,10 +45,12 @@ double ev_front_factor(const ev_sheet *sheet, double scale, double room)
     return ev_step_below(room / (error * scale));
 }
 
-static void flush_run(ev_pen *pen, front_run *run, double base)
+static void flush_run(ev_pen *pen, front_run *run, double base, bool even)
 {
     if (run->count >= 2) {
-        ev_colour colour = run->late ? pen->theme->late : pen->theme->early;
+        ev_colour colour = even        ? pen->theme->ink
+                           : run->late ? pen->theme->late
+                                       : pen->theme->early;
         cairo_move_to(pen->cairo, base, run->y[0]);
         for (int i = 0; i < run->count; ++i)
             cairo_line_to(pen->cairo, run->x[i], run->y[i]);
@@ -73,6 +80,7 @@ static void add_point(front_run *run, double x, double y)
 static void draw_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *sheet, double base,
                        double bend)
 {
+    bool even = ev_is_even(largest_error(sheet), sheet);
     front_run run = {.count = 0};
     double before_error = NAN, before_y = 0.0;
     for (int i = 0; i < sheet->front_count; ++i) {
@@ -80,13 +88,13 @@ static void draw_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *shee
         ev_plot_to_page(map, 0.0, sheet->front_x[i], &x, &y);
         bool late = error > 0.0;
         if (!isfinite(error)) {
-            flush_run(pen, &run, base);
+            flush_run(pen, &run, base, even);
         } else {
-            if (run.count > 0 && late != run.late) {
+            if (run.count > 0 && late != run.late && !even) {
                 double share = before_error / (before_error - error);
                 double cross = before_y + share * (y - before_y);
                 add_point(&run, base, cross);
-                flush_run(pen, &run, base);
+                flush_run(pen, &run, base, even);
                 add_point(&run, base, cross);
             }
             run.late = late;
@@ -95,7 +103,7 @@ static void draw_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *shee
         before_error = error;
         before_y = y;
     }
-    flush_run(pen, &run, base);
+    flush_run(pen, &run, base, even);
 }
 
 static front_extremes find_extremes(const ev_plot_map *map, const ev_sheet *sheet)
@@ -135,14 +143,15 @@ static void draw_label(ev_pen *pen, const char *name, const char *string, double
                             .halo = true});
 }
 
-/* How far the drawn front runs ahead of the even line over the height of a label, page. */
-static double ahead_at(const ev_section *section, const ev_sheet *sheet, double middle)
+/* How far the drawn front runs ahead of the even line within `reach` of a height, page. */
+static double ahead_at(const ev_section *section, const ev_sheet *sheet, double middle,
+                       double reach)
 {
     double ahead = 0.0;
     for (int i = 0; i < sheet->front_count; ++i) {
         double x, y;
         ev_plot_to_page(&section->map, 0.0, sheet->front_x[i], &x, &y);
-        if (fabs(y - middle) < 11.0 && isfinite(sheet->front[i]))
+        if (fabs(y - middle) < reach && isfinite(sheet->front[i]))
             ahead = fmax(ahead, -sheet->front[i]);
     }
     return ahead * sheet->front_exaggeration * section->scale;
@@ -154,7 +163,7 @@ static void draw_extremes(ev_pen *pen, const ev_sheet *sheet, const ev_section *
 {
     double x = base + 14.0;
     char text[64], error[48];
-    if (fmax(e->late, e->early) < sheet->antenna->wavelength / 500.0) {
+    if (ev_is_even(fmax(e->late, e->early), sheet)) {
         draw_label(pen, "text.stage.even", "even", x, top, EV_FONT_BODY_STRONG, pen->theme->ink);
         return;
     }
@@ -170,12 +179,12 @@ static void draw_extremes(ev_pen *pen, const ev_sheet *sheet, const ev_section *
     ev_format_error(error, sizeof error, e->late, false);
     snprintf(text, sizeof text, "late %s", error);
     draw_label(pen, "text.stage.late", text,
-               base + 14.0 + fmax(0.0, ahead_at(section, sheet, late_y - 4.0)), late_y,
+               base + 14.0 + fmax(0.0, ahead_at(section, sheet, late_y - 4.0, 11.0)), late_y,
                EV_FONT_BODY_STRONG, pen->theme->late);
     ev_format_error(error, sizeof error, e->early, false);
     snprintf(text, sizeof text, "early %s", error);
     draw_label(pen, "text.stage.early", text,
-               base + 14.0 + fmax(0.0, ahead_at(section, sheet, early_y - 4.0)), early_y,
+               base + 14.0 + fmax(0.0, ahead_at(section, sheet, early_y - 4.0, 11.0)), early_y,
                EV_FONT_BODY_STRONG, pen->theme->early);
 }
 
@@ -202,12 +211,12 @@ void ev_front_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet
     front_extremes extremes = find_extremes(&section->map, sheet);
     double head = fmin(fmax(top + 13.0, pen->region.y + 22.0), floor - 90.0);
     char text[64];
-    draw_label(pen, "text.stage.front", "The front", base + 14.0, head, EV_FONT_BODY_STRONG,
-               pen->theme->ink);
+    double x = base + 14.0 + fmax(0.0, ahead_at(section, sheet, head + 12.0, 28.0));
+    draw_label(pen, "text.stage.front", "The front", x, head, EV_FONT_BODY_STRONG, pen->theme->ink);
     snprintf(text, sizeof text, "path error \u00d7%g", factor);
-    draw_label(pen, "text.stage.front.factor", text, base + 14.0, head + 17.0, EV_FONT_NOTE,
+    draw_label(pen, "text.stage.front.factor", text, x, head + 17.0, EV_FONT_NOTE,
                pen->theme->second);
-    draw_label(pen, "text.stage.front.even", "dashed: even", base + 14.0, head + 32.0, EV_FONT_NOTE,
+    draw_label(pen, "text.stage.front.even", "dashed: even", x, head + 32.0, EV_FONT_NOTE,
                pen->theme->second);
     draw_extremes(pen, sheet, section, &extremes, base, head + 56.0, floor);
 }

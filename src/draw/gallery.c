@@ -5,7 +5,7 @@
 #include <math.h>
 #include <stdio.h>
 
-static const double margin = 40.0, gap = 28.0, head = 96.0, words = 60.0;
+static const double margin = 40.0, gap = 32.0, head = 96.0, words = 76.0;
 /* Lines and hatching of a small drawing are drawn smaller too. */
 static const double shrink = 0.7;
 
@@ -14,17 +14,17 @@ typedef struct gallery_grid {
     double width, height; /* of a cell */
 } gallery_grid;
 
-/* As many columns as make the cells least unlike 4:3. */
+/* As many rows as make the cells least unlike a card; the columns follow, none to spare. */
 static gallery_grid make_grid(double width, double height, int count)
 {
-    gallery_grid best = {1, count, 0.0, 0.0};
+    gallery_grid best = {.columns = count, .rows = 1};
     double least = INFINITY;
-    for (int columns = 1; columns <= count; ++columns) {
-        gallery_grid grid = {.columns = columns, .rows = (count + columns - 1) / columns};
-        grid.width = (width - 2.0 * margin - gap * (columns - 1)) / columns;
-        grid.height = (height - head - margin - gap * (grid.rows - 1)) / grid.rows;
-        double unlike = fabs(log(grid.width / fmax(grid.height, 1.0) / 1.2));
-        if (unlike < least && grid.width >= 150.0) {
+    for (int rows = 1; rows <= count; ++rows) {
+        gallery_grid grid = {.columns = (count + rows - 1) / rows, .rows = rows};
+        grid.width = (width - 2.0 * margin - gap * (grid.columns - 1)) / grid.columns;
+        grid.height = (height - head - margin - gap * (rows - 1)) / rows;
+        double unlike = fabs(log(fmax(grid.width, 1.0) / fmax(grid.height, 1.0) / 1.25));
+        if (unlike < least) {
             least = unlike;
             best = grid;
         }
@@ -104,7 +104,7 @@ static void draw_item(ev_pen *pen, const ev_gallery_item *item, int index, const
                             .x = cell.x,
                             .width = cell.width,
                             .baseline = baseline + 18.0,
-                            .lines = 2,
+                            .lines = 3,
                             .line_height = 15.0});
 }
 

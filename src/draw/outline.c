@@ -105,6 +105,15 @@ void ev_outline_struts(ev_pen *pen, const ev_plot_map *map, const ev_antenna *an
     double held = antenna->feed_count > 0 ? antenna->feeds[0].position.z : antenna->focal_length;
     if (antenna->dual)
         held = ev_sub_place(&antenna->sub, antenna->sub.rim_centre).z;
+    if (shadows->strip_count > 0) {
+        /* The rim beyond the section, edge on: what the struts stand on. */
+        ev_vec3 top = ev_main_point(antenna, antenna->offset + antenna->radius, 0.0);
+        ev_vec3 bottom = ev_main_point(antenna, antenna->offset - antenna->radius, 0.0);
+        double tx, ty, bx, by;
+        to_page(map, top, &tx, &ty);
+        to_page(map, bottom, &bx, &by);
+        ev_pen_line(pen, tx, ty, bx, by, pen->theme->second, EV_LINE_DIMENSION, 0.7);
+    }
     for (int i = 0; i < shadows->strip_count; ++i) {
         const ev_strip *strip = &shadows->strips[i];
         double to = fmin(strip->to, antenna->radius);

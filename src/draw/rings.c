@@ -7,6 +7,9 @@
 
 enum { FINE = 65, PADDED = FINE + 2, LEVEL_COUNT = EV_RING_CAPACITY, SPOT_CAPACITY = 128 };
 
+/* Labels closer than this tell nothing apart. */
+static const double label_room = 22.0;
+
 /* Outermost first. */
 static const double levels_db[LEVEL_COUNT] = {4.0, 2.0, 1.0, 0.5, 0.1};
 
@@ -75,7 +78,8 @@ static void consider_spot(rings *r, ring_spots *spots, double x, double y)
 {
     const ev_detail *detail = r->detail;
     double inset = detail->radius - 9.0 - 0.5 * spots->width;
-    if (spots->count == SPOT_CAPACITY || hypot(x - detail->x, y - detail->y) > inset ||
+    if (spots->count == SPOT_CAPACITY || fabs(y - detail->words_y) < 17.0 ||
+        hypot(x - detail->x, y - detail->y) > inset ||
         hypot(x - r->handle[0], y - r->handle[1]) < EV_HANDLE_RADIUS + 14.0 + 0.5 * spots->width)
         return;
     double turn = remainder(atan2(y - r->best[1], x - r->best[0]) - r->heading, 2.0 * EV_PI);
@@ -121,7 +125,21 @@ static rings start_rings(ev_pen *pen, const ev_detail *detail)
     return r;
 }
 
-/* Inner rings choose first; each takes its best spot that is clear of those before it. */
+/* Distance to the nearest label chosen before, page; negative where they would touch. */
+static double room_at(const ring_spot *spot, double width, const ev_ring_labels *labels)
+{
+    double room = 60.0;
+    for (int i = 0; i < labels->count; ++i) {
+        const ev_ring_label *other = &labels->items[i];
+        double dx = fabs(spot->x - other->x), dy = fabs(spot->y - other->y);
+        if (dx < 0.5 * (width + other->width) + 5.0 && dy < 15.0)
+            return -1.0;
+        room = fmin(room, hypot(dx, dy));
+    }
+    return room;
+}
+
+/* Inner rings choose first; each takes the best of its spots that are clear of those before. */
 static void choose_labels(const rings *r, ev_ring_labels *labels)
 {
     for (int i = LEVEL_COUNT - 1; i >= 0; --i) {
@@ -130,14 +148,9 @@ static void choose_labels(const rings *r, ev_ring_labels *labels)
         double score = -1.0;
         for (int k = 0; k < spots->count; ++k) {
             const ring_spot *spot = &spots->items[k];
-            bool clear = spot->score > score;
-            for (int j = 0; clear && j < labels->count; ++j) {
-                const ev_ring_label *other = &labels->items[j];
-                clear = fabs(spot->x - other->x) > 0.5 * (spots->width + other->width) + 5.0 ||
-                        fabs(spot->y - other->y) > 15.0;
-            }
-            if (clear) {
-                score = spot->score;
+            double room = room_at(spot, spots->width, labels);
+            if (room >= label_room && spot->score + 0.03 * room > score) {
+                score = spot->score + 0.03 * room;
                 best.x = spot->x;
                 best.y = spot->y;
             }

@@ -5,6 +5,9 @@
 #include <math.h>
 #include <stdio.h>
 
+/* From the leftmost part of the antenna to the dimension line of the diameter. */
+static const double dimension_reach = 38.0;
+
 /* Room of the antenna proper: the dimension of the diameter stands to its left, that of the focal
  * length and the scale bar below, the Front to its right. */
 static ev_rect antenna_room(const ev_page *page, bool below_tabs)
@@ -15,15 +18,17 @@ static ev_rect antenna_room(const ev_page *page, bool below_tabs)
     return (ev_rect){left, top, right - left, stage.y + stage.height - 70.0 - top};
 }
 
-static ev_section fit_room(ev_rect room, ev_bounds bounds)
+static ev_section fit_room(ev_rect room, ev_bounds bounds, double clear_x)
 {
     double wide = bounds.z1 - bounds.z0, high = bounds.x1 - bounds.x0;
     double scale = fmin(room.width / wide, room.height / high);
     double spare_x = room.width - scale * wide, spare_y = room.height - scale * high;
-    /* The larger part of spare width goes to where the rays run together to the Front. */
+    /* The larger part of spare width goes to where the rays run together to the Front, but the
+     * dimension line keeps clear of the tabs where it can. */
+    double left = fmax(0.42 * spare_x, fmin(spare_x, clear_x - room.x));
     ev_section section = {.scale = scale, .bounds = bounds};
     section.map = (ev_plot_map){
-        .x0 = room.x + 0.42 * spare_x - scale * bounds.z0,
+        .x0 = room.x + left - scale * bounds.z0,
         .x_scale = scale,
         .y0 = room.y + 0.5 * spare_y + scale * bounds.x1,
         .y_scale = -scale,
@@ -34,7 +39,7 @@ static ev_section fit_room(ev_rect room, ev_bounds bounds)
 
 static double dimension_x(const ev_section *section)
 {
-    return section->map.x0 + section->scale * section->bounds.z0 - 38.0;
+    return section->map.x0 + section->scale * section->bounds.z0 - dimension_reach;
 }
 
 static void zoom_section(ev_section *section, ev_rect room, const ev_sheet *sheet)
@@ -53,11 +58,12 @@ ev_section ev_section_fit(const ev_page *page, const ev_sheet *sheet)
 {
     ev_bounds bounds = ev_outline_bounds(sheet->antenna);
     ev_rect room = antenna_room(page, false);
-    ev_section section = fit_room(room, bounds);
+    double clear_x = page->stage.x + 150.0 + dimension_reach;
+    ev_section section = fit_room(room, bounds, clear_x);
     /* Where the dimension line comes under the tabs, everything moves below them. */
-    if (dimension_x(&section) < page->stage.x + 150.0) {
+    if (dimension_x(&section) < page->stage.x + 149.0) {
         room = antenna_room(page, true);
-        section = fit_room(room, bounds);
+        section = fit_room(room, bounds, 0.0);
     }
     zoom_section(&section, room, sheet);
     return section;
@@ -75,7 +81,9 @@ static void draw_diameter(ev_pen *pen, const ev_section *section, const ev_anten
     ev_pen_line(pen, x - 5.0, by, bx - 4.0, by, pen->theme->second, EV_LINE_HATCH, 0.7);
     char label[48];
     ev_format_length(label, sizeof label, 2.0 * antenna->radius);
-    ev_dimension_upright(pen, "text.stage.diameter", label, x, ty, by);
+    double axis_x, axis_y;
+    ev_plot_to_page(&section->map, 0.0, 0.0, &axis_x, &axis_y);
+    ev_dimension_upright(pen, "text.stage.diameter", label, x, ty, by, axis_y);
 }
 
 /* Below the axis where the dish leaves room there, else below everything. */

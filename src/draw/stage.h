@@ -48,10 +48,13 @@ void ev_front_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet
 /* A factor of 1, 2, 5 ... that bends the Front by at most `room` pixels. */
 double ev_front_factor(const ev_sheet *sheet, double scale, double room);
 double ev_front_room(const ev_page *page);
+/* Whether an error is too small to speak of: under a 500th of a wavelength. */
+bool ev_is_even(double error, const ev_sheet *sheet);
 
-/* Dimension lines with arrows, text in a gap of the line. */
+/* Dimension lines with arrows, text in a gap of the line; upright ones keep it clear of the height
+ * `avoid`, where another line crosses. */
 void ev_dimension_upright(ev_pen *pen, const char *name, const char *label, double x, double y0,
-                          double y1);
+                          double y1, double avoid);
 void ev_dimension_level(ev_pen *pen, const char *name, const char *label, double x0, double x1,
                         double y);
 void ev_scale_bar(ev_pen *pen, double x, double y, double scale);

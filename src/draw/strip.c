@@ -133,7 +133,7 @@ static void draw_complaint(ev_pen *pen, const ev_field *field, ev_rect place, do
     double end = pen->region.x + pen->region.width - margin;
     double width = fmin(ev_text_width(field->complaint, EV_FONT_NOTE) + 2.0, end - margin);
     double x = fmin(place.x, end - width);
-    ev_pen_fill(pen, (ev_rect){x - 8.0, baseline - 14.0, width + 16.0, 26.0}, 0.0,
+    ev_pen_fill(pen, (ev_rect){x - 8.0, baseline - 16.5, width + 16.0, 35.0}, 0.0,
                 pen->theme->ground, 1.0);
     ev_text(pen, (ev_words){.name = "text.complaint",
                             .string = field->complaint,

@@ -87,19 +87,19 @@ void ev_draw_verdict(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet,
     first.baseline = middle - 5.0;
     second.baseline = middle + 21.0;
     if (long_text || long_advice) {
-        /* Two lines each, in the room of one large and one small. */
-        first.font.size = 16.0;
-        first.least = 0.0;
+        /* Up to two lines each, in the room of one large and one small. */
+        first.font.size = long_text ? 16.0 : 19.0;
+        first.least = long_text ? 0.0 : 16.0;
         first.lines = long_text ? 2 : 1;
         first.line_height = 19.0;
-        second.font.size = 12.0;
+        second.font.size = 12.5;
         second.least = 0.0;
         second.lines = 2;
-        second.line_height = 15.0;
+        second.line_height = 16.0;
         int text_lines = ev_text_extent(&first).lines, advice_lines = ev_text_extent(&second).lines;
-        double height = 19.0 * text_lines + 4.0 + 15.0 * advice_lines;
-        first.baseline = middle - 0.5 * height + 15.0;
-        second.baseline = middle + 0.5 * height - 15.0 * (advice_lines - 1) - 4.0;
+        double height = 19.0 * text_lines + 5.0 + 16.0 * advice_lines;
+        first.baseline = middle - 0.5 * height + 15.5;
+        second.baseline = middle + 0.5 * height - 16.0 * (advice_lines - 1) - 4.0;
     }
     ev_text(&pen, first);
     ev_text(&pen, second);

@@ -152,7 +152,7 @@ static void take_scalar(builder *b, struct fy_event *event)
     node->end = mark_or(end, node->start);
     enum fy_node_style style = fy_event_get_node_style(event);
     bool quoted = style == FYNS_SINGLE_QUOTED || style == FYNS_DOUBLE_QUOTED;
-    node->plain = style == FYNS_PLAIN || length == 0;
+    node->plain = !quoted && (style == FYNS_PLAIN || length == 0);
     if (quoted && node->start > 0) { /* libfyaml marks what is between the quotes */
         node->start--;
         node->end++;

@@ -178,7 +178,8 @@ enum { CANDIDATES = 1600 };
 
 typedef struct candidate {
     double theta; /* signed, + toward the feed's side nearest +x */
-    ev_fate fate;
+    ev_fate fate; /* without struts */
+    bool in_strut;
 } candidate;
 
 static ev_vec3 in_plane(const ev_feed *feed, double theta)
@@ -188,7 +189,10 @@ static ev_vec3 in_plane(const ev_feed *feed, double theta)
     return ev_vec3_along(ev_vec3_scale(cos(theta), feed->axis), sin(theta), side);
 }
 
-static void list_candidates(const ev_antenna *antenna, int feed, candidate *list)
+/* A strut that lies in the plane would shade all of its half though it is thin: rays that stand for
+ * the rest are drawn as if there were no struts. */
+static void list_candidates(const ev_antenna *antenna, const ev_antenna *bare, int feed,
+                            candidate *list)
 {
     const ev_feed *source = &antenna->feeds[feed];
     double cumulative[CUMULATIVE_STEPS + 1];
@@ -196,34 +200,46 @@ static void list_candidates(const ev_antenna *antenna, int feed, candidate *list
     for (int i = 0; i < CANDIDATES; i++) {
         double share = 2.0 * (i + 0.5) / CANDIDATES - 1.0;
         double theta = copysign(angle_of(&source->pattern, cumulative, fabs(share)), share);
+        ev_vec3 direction = in_plane(source, theta);
         list[i].theta = theta;
-        list[i].fate = ev_trace(antenna, feed, in_plane(source, theta)).fate;
+        list[i].fate = ev_trace(bare, feed, direction).fate;
+        list[i].in_strut = ev_trace(antenna, feed, direction).fate == EV_FATE_SHADOW_STRUTS;
     }
+}
+
+static bool stands_for(const candidate *one, ev_fate fate)
+{
+    return fate == EV_FATE_SHADOW_STRUTS ? one->in_strut : one->fate == fate;
 }
 
 int ev_trace_section(const ev_antenna *antenna, int feed, int count,
                      const double shares[EV_FATE_COUNT], ev_ray *rays)
 {
     candidate *list = malloc(CANDIDATES * sizeof *list);
+    ev_antenna *bare = malloc(sizeof *bare);
     int written = 0;
-    if (!list)
+    if (!list || !bare)
         abort();
-    list_candidates(antenna, feed, list);
+    *bare = *antenna;
+    bare->shadows.strip_count = 0;
+    list_candidates(antenna, bare, feed, list);
     for (int fate = 0; fate < EV_FATE_COUNT; fate++) {
+        const ev_antenna *seen_by = fate == EV_FATE_SHADOW_STRUTS ? antenna : bare;
         int found = 0, wanted = (int)lround(shares[fate] * count), next = 0, seen = 0;
         for (int i = 0; i < CANDIDATES; i++)
-            found += list[i].fate == (ev_fate)fate;
-        for (int i = 0; i < CANDIDATES && next < wanted && found > 0; i++) {
-            if (list[i].fate != (ev_fate)fate)
+            found += stands_for(&list[i], (ev_fate)fate);
+        for (int i = 0; i < CANDIDATES && next < wanted && written < count; i++) {
+            if (!stands_for(&list[i], (ev_fate)fate))
                 continue;
             /* the next ray stands in the middle of its part of the fate's candidates */
-            if (seen++ < (int)((next + 0.5) * found / wanted) || written >= count)
+            if (seen++ < (int)((next + 0.5) * found / wanted))
                 continue;
-            rays[written] = ev_trace(antenna, feed, in_plane(&antenna->feeds[feed], list[i].theta));
+            rays[written] = ev_trace(seen_by, feed, in_plane(&antenna->feeds[feed], list[i].theta));
             rays[written++].power = 1.0 / count;
             next++;
         }
     }
+    free(bare);
     free(list);
     return written;
 }

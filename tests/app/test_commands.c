@@ -43,13 +43,14 @@ static char *read_all(FILE *stream)
 
 static outcome run(const char *arguments)
 {
-    char name[256];
+    char name[256], *command = NULL;
+    size_t size = 0;
     outcome result = {0};
-    char *command = malloc(strlen(arguments) + 2 * sizeof name);
-    assert_non_null(command);
     snprintf(name, sizeof name, "%s/stderr", scratch);
-    snprintf(command, strlen(arguments) + 2 * sizeof name, "%s %.*s 2>%s", EV_PROGRAM,
-             (int)strlen(arguments), arguments, name);
+    FILE *words = open_memstream(&command, &size);
+    assert_non_null(words);
+    fprintf(words, "%s %s 2>%s", EV_PROGRAM, arguments, name);
+    fclose(words);
     FILE *pipe = popen(command, "r");
     free(command);
     assert_non_null(pipe);

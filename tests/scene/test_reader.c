@@ -72,7 +72,7 @@ static const bad_scene bad_scenes[] = {
     {"not_value", 3, 7, HEAD "title:\n" REST},
     {"not_value", 4, 26, HEAD MAIN "feeds: [{name: a, shift: 3 mm}]\n"},
     {"not_value", 4, 28, HEAD MAIN "feeds: [{name: a, pattern: [x]}]\n"},
-    {"vector_count", 4, 27, HEAD MAIN "feeds: [{name: a, shift: [1 mm, 2 mm]}]\n"},
+    {"vector_count", 4, 26, HEAD MAIN "feeds: [{name: a, shift: [1 mm, 2 mm]}]\n"},
     {"vector_count", 4, 27, HEAD MAIN "feeds: [{name: a, toward: []}]\n"},
     {"not_number", 3, 18, HEAD "main: {diameter: wide, f_over_d: 0.4}\n" FEEDS},
     {"not_number", 3, 18, HEAD "main: {diameter: \"1,2 m\", f_over_d: 0.4}\n" FEEDS},

@@ -68,7 +68,7 @@ static outcome run(const char *arguments)
 
 static outcome run_on(const char *before, const char *scene, const char *after)
 {
-    char arguments[1024];
+    char arguments[16384];
     snprintf(arguments, sizeof arguments, "%s " EV_SCENES "/%s %s", before, scene, after);
     return run(arguments);
 }

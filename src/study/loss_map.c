@@ -17,6 +17,21 @@ static double choose_extent(const ev_best *best, const ev_part_axis axis[2])
     return extent > 0.0 ? extent : 0.01;
 }
 
+/* Along its axis the loss is flat, and its very lowest place can lie far from nominal for nothing:
+ * where nominal is as good, that is where the part belongs. */
+static void prefer_nominal(const ev_design *design, double frequency, const ev_antenna *antenna,
+                           const ev_loss_map *map, ev_best *best)
+{
+    double by[EV_AXIS_COUNT] = {0};
+    for (int i = 0; i < 2; i++)
+        by[map->axis[i]] = -ev_part_place(design, antenna, map->part, map->feed, map->axis[i]);
+    double gain = ev_part_gain_at(design, frequency, map->part, map->feed, by);
+    if (best->best_dbi - gain > 0.05)
+        return;
+    for (int i = 0; i < 2; i++)
+        best->by[map->axis[i]] = by[map->axis[i]];
+}
+
 void ev_loss_map_compute(const ev_design *design, double frequency, ev_part part, int feed,
                          ev_part_axis right, ev_part_axis up, double extent, ev_loss_map *map)
 {
@@ -27,6 +42,7 @@ void ev_loss_map_compute(const ev_design *design, double frequency, ev_part part
     ev_best best = ev_part_best(design, frequency, part, feed, axes);
     *map =
         (ev_loss_map){.part = part, .feed = feed, .axis = {right, up}, .best_dbi = best.best_dbi};
+    prefer_nominal(design, frequency, &antenna, map, &best);
     for (int i = 0; i < 2; i++) {
         double now = ev_part_place(design, &antenna, part, feed, map->axis[i]);
         map->best[i] = map->centre[i] = now + best.by[map->axis[i]];

@@ -12,7 +12,8 @@ typedef struct ev_loss_map {
     ev_part_axis axis[2]; /* right, up on the map */
     double extent;        /* m: the map covers [-extent, +extent] about `centre` on both axes */
     double centre[2];     /* m from nominal, along the axes */
-    double best[2];       /* m from nominal, where the gain is highest */
+    double best[2];       /* m from nominal: where it belongs, which is nominal
+                              itself when that is within 0.05 dB of the highest gain */
     double best_dbi;
     double loss_db[EV_LOSS_MAP_SIDE][EV_LOSS_MAP_SIDE]; /* [row: axis 1][column: axis 0], >= 0 */
 } ev_loss_map;

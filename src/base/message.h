@@ -14,7 +14,8 @@
 /* Files */
 #define EV_MESSAGE_file_missing "there is no file '%s'; check the name and the folder"
 #define EV_MESSAGE_file_is_folder "'%s' is a folder; name a file in it"
-#define EV_MESSAGE_file_not_regular "'%s' is not an ordinary file (a device or a pipe?); name a file"
+#define EV_MESSAGE_file_not_regular                                                                \
+    "'%s' is not an ordinary file (a device or a pipe?); name a file"
 #define EV_MESSAGE_file_unreadable "cannot be read (%s)"
 #define EV_MESSAGE_file_too_large                                                                  \
     "too large: files of this kind hold at most %.3g MB; is this the right file?"
@@ -30,8 +31,7 @@
 #define EV_MESSAGE_yaml_syntax "not readable as YAML: %s"
 #define EV_MESSAGE_yaml_alias                                                                      \
     "%s are not used in scene files; write the value itself where it is needed"
-#define EV_MESSAGE_yaml_several                                                                    \
-    "a second document starts here; a scene is one document%s"
+#define EV_MESSAGE_yaml_several "a second document starts here; a scene is one document%s"
 #define EV_MESSAGE_yaml_too_deep "nested more than %d deep; a scene needs four levels"
 #define EV_MESSAGE_yaml_too_many "more than %d values; a scene has a few hundred at most"
 
@@ -45,7 +45,8 @@
 #define EV_MESSAGE_key_missing_choice "%s needs one of %s; add for example '%s'"
 #define EV_MESSAGE_choice_two "'%s' and '%s' say the same thing; give one of %s"
 #define EV_MESSAGE_sub_three                                                                       \
-    "'%s' is one too many: the shape (magnification or eccentricity), interfocal and diameter of a " \
+    "'%s' is one too many: the shape (magnification or eccentricity), interfocal and diameter of " \
+    "a "                                                                                           \
     "subreflector follow from any two; remove one"
 #define EV_MESSAGE_sub_one                                                                         \
     "a subreflector needs two of: magnification or eccentricity, interfocal, diameter; %s"
@@ -53,7 +54,8 @@
 #define EV_MESSAGE_version_wrong "format '%s' is not known; this program reads 'evenpath: 1'"
 
 #define EV_MESSAGE_exponent_on_gaussian                                                            \
-    "a gaussian pattern has no exponent ('%s'); give its edge_taper, for example 'edge_taper: 11 dB'"
+    "a gaussian pattern has no exponent ('%s'); give its edge_taper, for example 'edge_taper: 11 " \
+    "dB'"
 
 /* Values */
 #define EV_MESSAGE_not_mapping "'%s' takes keys with values below it, not %s"
@@ -71,7 +73,7 @@
 #define EV_MESSAGE_word_unknown "'%s' is not known for '%s'; expected %s"
 #define EV_MESSAGE_word_is_vector "'%s: %s' is given by its numbers: write '%s: [%s]'"
 #define EV_MESSAGE_text_too_long "'%s' is too long: at most %d bytes"
-#define EV_MESSAGE_text_empty "'%s' is empty; give it a text or leave it out"
+#define EV_MESSAGE_text_empty "'%s' is empty; give it a name or leave it out"
 #define EV_MESSAGE_name_illegal                                                                    \
     "'%s' cannot be a name: use letters, digits, spaces, '-' and '_', no '.', '=' or control "     \
     "characters"
@@ -87,7 +89,8 @@
 
 /* Pattern tables */
 #define EV_MESSAGE_table_header                                                                    \
-    "the first line of a pattern table is 'theta_deg,e_db,h_db' or 'theta_deg,e_db,h_db,phase_deg', " \
+    "the first line of a pattern table is 'theta_deg,e_db,h_db' or "                               \
+    "'theta_deg,e_db,h_db,phase_deg', "                                                            \
     "here it is '%.60s'"
 #define EV_MESSAGE_table_columns "%d values in a line, expected %d as in the header"
 #define EV_MESSAGE_table_number "'%.40s' is no number; expected plain numbers between commas"
@@ -97,7 +100,8 @@
 #define EV_MESSAGE_table_phase "phase_deg is %s; expected -1e6 to 1e6"
 #define EV_MESSAGE_table_short "%d angles; a pattern needs at least 2, better one every few degrees"
 #define EV_MESSAGE_table_long "more than %d angles; thin the table out"
-#define EV_MESSAGE_table_no_power "the table '%s' radiates nothing: all its levels are below -200 dB"
+#define EV_MESSAGE_table_no_power                                                                  \
+    "the table '%s' radiates nothing: all its levels are below -200 dB"
 
 /* Saving */
 #define EV_MESSAGE_save_no_path "the scene has no file name yet%s; give one"
@@ -113,7 +117,8 @@
 #define EV_MESSAGE_geometry_not_finite                                                             \
     "'{name}' cannot be worked out from the values given; check those it follows from"
 #define EV_MESSAGE_depth_with_offset                                                               \
-    "'{name}' fixes the focal length of a symmetric dish only; with an offset give focal_length or " \
+    "'{name}' fixes the focal length of a symmetric dish only; with an offset give focal_length "  \
+    "or "                                                                                          \
     "f_over_d"
 #define EV_MESSAGE_sub_shape                                                                       \
     "'{name}' does not suit the shape (eccentricity {0}): a hyperboloid's is above 1, an "         \
@@ -138,17 +143,22 @@
     "'{name}' cannot be met: what the feed lights reaches 90 degrees from its axis; give an "      \
     "exponent"
 #define EV_MESSAGE_toward_impossible "'{name}': there is no such direction in front of the dish"
-#define EV_MESSAGE_strut_radii "a strut goes outward: its 'from' ({0}) must be less than its 'to' ({1})"
+#define EV_MESSAGE_strut_radii                                                                     \
+    "a strut goes outward: its 'from' ({0}) must be less than its 'to' ({1})"
 #define EV_MESSAGE_no_feed "an antenna needs at least one feed"
 #define EV_MESSAGE_dish_small                                                                      \
     "the dish is only {0} wavelengths across; under 10 rays are a guide, not a measure"
 #define EV_MESSAGE_sub_small                                                                       \
-    "the subreflector is only {0} wavelengths across; under 5 its diffraction loss, which rays do " \
+    "the subreflector is only {0} wavelengths across; under 5 its diffraction loss, which rays "   \
+    "do "                                                                                          \
     "not show, matters"
 #define EV_MESSAGE_hole_in_cone                                                                    \
-    "the hole ({0}) is wider than the shadow in the middle ({1}): power of the feed falls through it"
-#define EV_MESSAGE_feed_misses "'{name}': the feed lights none of its mirror; check its aim and tilt"
+    "the hole ({0}) is wider than the shadow in the middle ({1}): power of the feed falls "        \
+    "through it"
+#define EV_MESSAGE_feed_misses                                                                     \
+    "'{name}': the feed lights none of its mirror; check its aim and tilt"
 #define EV_MESSAGE_table_ends "'{name}': the pattern table ends at {0}; no power is assumed beyond"
-#define EV_MESSAGE_clearance "the feed or the subreflector reaches {0} into the beam; '{name}' decides it"
+#define EV_MESSAGE_clearance                                                                       \
+    "the feed or the subreflector reaches {0} into the beam; '{name}' decides it"
 #define EV_MESSAGE_feed_near                                                                       \
     "the feed is only {0} wavelengths from its mirror; under 2 it is no point source there"

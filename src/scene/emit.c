@@ -69,7 +69,8 @@ void ev_emit_row(ev_buffer *buffer, const ev_emitter *emitter, const ev_paramete
             return;
         }
     }
-    if (unit_from)
+    double read; /* "peak", or a length where an angle comes, has no unit to keep */
+    if (unit_from && ev_quantity_parse(row->quantity, unit_from, &read, NULL) == EV_PARSE_OK)
         ev_quantity_unit_of(unit_from, unit, sizeof unit);
     ev_row_write(row, value, unit[0] ? unit : ev_row_file_unit(row, value), text, sizeof text);
     ev_buffer_add(buffer, text, strlen(text));

@@ -202,6 +202,28 @@ static ev_document *read_back(ev_scene *scene, const ev_design *design, const ch
     return document;
 }
 
+/* Whether the file still says what was read from it. A file that is gone is no one's work. */
+static bool is_unchanged_on_disk(const ev_scene *scene, const char *target,
+                                 ev_diagnostics *diagnostics)
+{
+    if (scene->document == NULL || strcmp(target, scene->path) != 0)
+        return true;
+    ev_diagnostics silent;
+    ev_diagnostics_init(&silent);
+    size_t size = 0;
+    char *text = ev_file_read(target, EV_DOCUMENT_BYTES, &size, &silent);
+    bool missing = silent.count > 0 && strcmp(silent.items[0].id, "file_missing") == 0;
+    bool same =
+        text && size == scene->document->size && memcmp(text, scene->document->text, size) == 0;
+    ev_diagnostics_clear(&silent);
+    free(text);
+    if (!same && !missing) {
+        ev_place place = {.file = target};
+        ev_report(diagnostics, EV_SEVERITY_ERROR, save_changed, &place, target);
+    }
+    return same || missing;
+}
+
 bool ev_scene_save(ev_scene *scene, const ev_design *design, const char *path,
                    ev_diagnostics *diagnostics)
 {
@@ -213,7 +235,7 @@ bool ev_scene_save(ev_scene *scene, const ev_design *design, const char *path,
     }
     ev_design whole = *design;
     if (!attach_tables(scene->patterns, target, &whole, diagnostics) ||
-        !is_sound(scene, &whole, diagnostics))
+        !is_sound(scene, &whole, diagnostics) || !is_unchanged_on_disk(scene, target, diagnostics))
         return false;
     char *text = ev_scene_text(scene, &whole, &size);
     ev_document *document = read_back(scene, &whole, text, size, target, diagnostics);

@@ -40,7 +40,7 @@ char *ev_scene_text(const ev_scene *scene, const ev_design *design, size_t *size
 
 /* Writes that text to `path` (NULL: where it came from) and makes it the scene's document. What was
  * written is read back first: false with diagnostics, and no file touched, when the design is not
- * sound or the text would not say the same design. */
+ * sound, the text would not say the same design, or someone else changed the file meanwhile. */
 bool ev_scene_save(ev_scene *scene, const ev_design *design, const char *path,
                    ev_diagnostics *diagnostics);
 

@@ -149,7 +149,7 @@ bool ev_value_set_text(void *owner, const ev_parameter *row, const char *text, e
         report_spot(spot, 0, diagnostics, text_too_long, row->name, (int)row->size - 1);
         return false;
     }
-    if (text[0] == 0 && row->owner != EV_OWNER_DESIGN) {
+    if (is_name(row) && text[0] == 0) {
         report_spot(spot, 0, diagnostics, text_empty, row->name);
         return false;
     }

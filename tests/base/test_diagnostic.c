@@ -68,7 +68,7 @@ static void prints_place_line_and_caret(void **state)
     ev_report(&d, EV_SEVERITY_ERROR, text_empty, &place, "title");
     char text[512];
     print_to_text(&d, text, sizeof text);
-    assert_string_equal(text, "s.yaml:3:8: error: 'title' is empty; give it a text or leave it "
+    assert_string_equal(text, "s.yaml:3:8: error: 'title' is empty; give it a name or leave it "
                               "out\n  caf\u00e9: 12 m\n         ^^^^\n");
     ev_diagnostics_clear(&d);
 }

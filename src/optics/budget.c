@@ -13,6 +13,7 @@ typedef struct account {
     int feed;
     ev_order order;
     bool edges;      /* the pattern ends somewhere over the aperture */
+    ev_nodes rim;    /* around the rim, without weight */
     ev_nodes whole;  /* the aperture outside the hole */
     ev_nodes lit;    /* that part of it which the pattern reaches; may be `whole` itself */
     ev_nodes shadow; /* what is shadowed and lit */
@@ -25,24 +26,15 @@ static bool is_unlit(const ev_antenna *antenna, int feed, ev_vec3 direction)
     return ev_vec3_angle(direction, lit->axis) > lit->pattern.end;
 }
 
-enum { RIM_SAMPLES = 48 };
-
 static bool find_edges(const account *sum)
 {
-    const ev_antenna *antenna = sum->antenna;
     if (sum->antenna->feeds[sum->feed].pattern.end >= EV_PI)
         return false;
-    for (int i = 0; i < sum->whole.count; i++)
-        if (is_unlit(antenna, sum->feed, sum->whole.items[i].direction))
-            return true;
-    for (int i = 0; i < RIM_SAMPLES; i++) {
-        double phi = 2.0 * EV_PI * i / RIM_SAMPLES;
-        ev_sample sample =
-            ev_aperture_sample(antenna, sum->feed, antenna->offset + antenna->radius * cos(phi),
-                               antenna->radius * sin(phi));
-        if (is_unlit(antenna, sum->feed, sample.direction))
-            return true;
-    }
+    const ev_nodes *sets[] = {&sum->rim, &sum->whole};
+    for (int set = 0; set < 2; set++)
+        for (int i = 0; i < sets[set]->count; i++)
+            if (is_unlit(sum->antenna, sum->feed, sets[set]->items[i].direction))
+                return true;
     return false;
 }
 
@@ -57,9 +49,12 @@ static double path_span(const ev_nodes *nodes, ev_vec3 wanted)
     return high > low ? high - low : 0.0;
 }
 
+enum { RIM_NODES = 96 };
+
 static void make_nodes(account *sum)
 {
     const ev_antenna *antenna = sum->antenna;
+    ev_nodes_circle(antenna, sum->feed, antenna->radius, RIM_NODES, &sum->rim);
     sum->order = ev_order_for(antenna, sum->feed, 0.0);
     ev_nodes_whole(antenna, sum->feed, sum->order, &sum->whole);
     double span = path_span(&sum->whole, antenna->feeds[sum->feed].wanted);
@@ -73,49 +68,53 @@ static void make_nodes(account *sum)
     sum->lit = sum->whole;
     if (sum->edges) {
         ev_cut cut = {.antenna = antenna, .feed = sum->feed, .lit = true};
-        ev_order piece = {sum->order.radial, sum->order.around / 3};
-        ev_nodes_cut(&cut, piece, &sum->lit);
+        ev_nodes_ring(&cut, antenna->hole_radius, antenna->radius, sum->order, &sum->lit);
     }
 }
 
-/* Shadows are small or thin: fewer nodes a piece serve. */
-static ev_order shadow_order(const account *sum)
+enum { OBSTACLE_CAPACITY = 1 + EV_SHADOW_BODY_CAPACITY + EV_SHADOW_STRIP_CAPACITY };
+
+/* Whose shadows the sub's rim may cut: rays that come from near it or from beyond. */
+static bool find_cut_shadows(const account *sum, bool flags[OBSTACLE_CAPACITY])
 {
-    return (ev_order){sum->order.radial / 2 < 48 ? sum->order.radial / 2 : 48,
-                      sum->order.around / 5 < 32 ? sum->order.around / 5 : 32};
+    bool beyond = false, any = false;
+    for (int i = 0; i < sum->rim.count; i++)
+        beyond |= sum->rim.items[i].sub_inside < -1e-10;
+    for (int i = 0; beyond && i < sum->shadow.count; i++) {
+        bool near = sum->shadow.items[i].sub_inside < 0.05;
+        flags[sum->shadow.items[i].obstacle] |= near;
+        any |= near;
+    }
+    return any;
 }
 
-static bool has_shadows(const ev_shadows *shadows)
+static void add_power(const ev_nodes *nodes, const bool *left_out, double power[EV_FATE_COUNT])
 {
-    return shadows->has_sub || shadows->body_count > 0 || shadows->strip_count > 0;
-}
-
-static bool sub_rim_cuts(const ev_nodes *nodes)
-{
-    for (int i = 0; i < nodes->count; i++)
-        if (nodes->items[i].sub_inside < -1e-10)
-            return true;
-    return false;
+    for (int i = 0; i < nodes->count; i++) {
+        const ev_node *node = &nodes->items[i];
+        if (!left_out || !left_out[node->obstacle])
+            power[node->tag] += node->weight * node->density;
+    }
 }
 
 /* Shadow shares honour the sub's rim, the shadowed field does not (it continues the conic). */
 static void sum_shadows(account *sum, double power[EV_FATE_COUNT])
 {
     const ev_antenna *antenna = sum->antenna;
-    if (!has_shadows(&antenna->shadows))
+    if (ev_shadow_count(&antenna->shadows) == 0)
         return;
-    ev_cut cut = {.antenna = antenna, .feed = sum->feed, .lit = sum->edges, .shadows = true};
-    ev_nodes_cut(&cut, shadow_order(sum), &sum->shadow);
-    ev_nodes counted = sum->shadow;
-    bool rim = sub_rim_cuts(&sum->shadow);
-    if (rim) {
-        cut.inside = true;
-        ev_nodes_cut(&cut, shadow_order(sum), &counted);
-    }
-    for (int i = 0; i < counted.count; i++)
-        power[counted.items[i].tag] += counted.items[i].weight * counted.items[i].density;
-    if (rim)
-        ev_nodes_free(&counted);
+    bool flags[OBSTACLE_CAPACITY] = {false};
+    ev_cut cut = {.antenna = antenna, .feed = sum->feed, .lit = sum->edges};
+    ev_nodes_shadow(&cut, NULL, sum->order, &sum->shadow);
+    bool rim = antenna->dual && find_cut_shadows(sum, flags);
+    add_power(&sum->shadow, rim ? flags : NULL, power);
+    if (!rim)
+        return;
+    ev_nodes counted;
+    cut.inside = true;
+    ev_nodes_shadow(&cut, flags, sum->order, &counted);
+    add_power(&counted, NULL, power);
+    ev_nodes_free(&counted);
 }
 
 /* Below the horizon over the main reflector of a single-mirror antenna. */
@@ -128,9 +127,9 @@ static double captured_below(const account *sum)
     if (!below || !above)
         return below ? ev_nodes_power(&sum->lit) : 0.0;
     ev_cut cut = {.antenna = sum->antenna, .feed = sum->feed, .lit = sum->edges, .ground = true};
-    ev_order piece = {sum->order.radial, sum->order.around / 3};
+    const ev_antenna *antenna = sum->antenna;
     ev_nodes nodes;
-    ev_nodes_cut(&cut, piece, &nodes);
+    ev_nodes_ring(&cut, antenna->hole_radius, antenna->radius, sum->order, &nodes);
     double power = ev_nodes_power(&nodes);
     ev_nodes_free(&nodes);
     return power;
@@ -279,6 +278,7 @@ void ev_budget_compute_feed(const ev_antenna *antenna, int feed, ev_feed_budget 
     sum_rim(&sum, budget);
     if (sum.edges)
         ev_nodes_free(&sum.lit);
+    ev_nodes_free(&sum.rim);
     ev_nodes_free(&sum.whole);
     ev_nodes_free(&sum.shadow);
 }

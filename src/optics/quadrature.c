@@ -1,4 +1,4 @@
-/* Gauss-Legendre rules and polar regions with exact breaks. Called by the budget; knows nothing of
+/* Gauss-Legendre rules and plane regions with exact breaks. Called by the budget; knows nothing of
  * antennas. */
 #include "optics/quadrature.h"
 
@@ -38,22 +38,23 @@ void ev_gauss_make(int count, ev_gauss *gauss)
     }
 }
 
-static bool same_makeup(const ev_shadow_interval *a, int a_count, const ev_shadow_interval *b,
-                        int b_count)
-{
-    if (a_count != b_count)
-        return false;
-    for (int i = 0; i < a_count; i++)
-        if (a[i].fate != b[i].fate || a[i].from_id != b[i].from_id || a[i].to_id != b[i].to_id)
-            return false;
-    return true;
-}
-
 typedef struct slice_at {
     double phi;
     int count;
     ev_shadow_interval intervals[EV_SLICE_CAPACITY];
 } slice_at;
+
+static bool same_makeup(const slice_at *a, const slice_at *b)
+{
+    if (a->count != b->count)
+        return false;
+    for (int i = 0; i < a->count; i++) {
+        const ev_shadow_interval *p = &a->intervals[i], *q = &b->intervals[i];
+        if (p->fate != q->fate || p->from_id != q->from_id || p->to_id != q->to_id)
+            return false;
+    }
+    return true;
+}
 
 static void cut(const ev_region *region, double phi, slice_at *slice)
 {
@@ -72,131 +73,205 @@ static void add_node(ev_region_nodes *nodes, ev_region_node node)
     nodes->items[nodes->count++] = node;
 }
 
-static void integrate_piece(const ev_region *region, const ev_gauss *radial, const ev_gauss *around,
-                            double from, double to, slice_at *slice, ev_region_nodes *nodes)
+/* An integral being made: rules, slices to compare, and the nodes written so far. */
+typedef struct work {
+    const ev_region *region;
+    ev_gauss radial, around;
+    slice_at slices[3];
+    ev_region_nodes *nodes;
+} work;
+
+static void add_radius(work *to, double phi, double turn)
 {
-    for (int j = 0; j < around->count; j++) {
-        /* phi = from + span (3 u^2 - 2 u^3): slow at both ends */
-        double u = around->x[j], span = to - from;
-        double turn = around->weight[j] * span * 6.0 * u * (1.0 - u);
-        cut(region, from + span * u * u * (3.0 - 2.0 * u), slice);
-        for (int i = 0; i < slice->count; i++) {
-            ev_shadow_interval interval = slice->intervals[i];
-            double length = interval.to - interval.from;
-            for (int k = 0; k < radial->count; k++) {
-                double r = interval.from + length * radial->x[k];
-                add_node(nodes,
-                         (ev_region_node){r, slice->phi, turn * radial->weight[k] * length * r,
-                                          interval.fate});
-            }
+    slice_at *slice = &to->slices[0];
+    cut(to->region, phi, slice);
+    for (int i = 0; i < slice->count; i++) {
+        ev_shadow_interval interval = slice->intervals[i];
+        double length = interval.to - interval.from;
+        for (int k = 0; k < to->radial.count; k++) {
+            double r = interval.from + length * to->radial.x[k];
+            double weight = turn * to->radial.weight[k] * length * (to->region->rows ? 1.0 : r);
+            add_node(to->nodes, (ev_region_node){r, phi, weight, interval.fate});
         }
     }
 }
 
-enum { SAMPLES_PER_SEED = 3, BREAK_CAPACITY = 4096 };
+/* Bunched: phi = from + span (3 x^2 - 2 x^3), slow at both ends. */
+static void add_piece(work *to, double from, double span, int count, bool bunched)
+{
+    if (to->around.count != count)
+        ev_gauss_make(count, &to->around);
+    for (int j = 0; j < to->around.count; j++) {
+        double x = to->around.x[j], turn = to->around.weight[j] * span;
+        if (bunched) {
+            turn *= 6.0 * x * (1.0 - x);
+            x *= x * (3.0 - 2.0 * x);
+        }
+        add_radius(to, from + span * x, turn);
+    }
+}
 
-/* Angle at which the make-up changes between two that differ. */
+enum { SAMPLES_PER_SEED = 3, BREAK_CAPACITY = 4096, PIECE_SPARE = 6 };
+
+/* Angle at which the make-up changes between two that differ. An error d of it costs the integral
+ * d^1.5. */
 static double find_break(const ev_region *region, const slice_at *low, double high,
                          slice_at *middle)
 {
-    double a = low->phi, b = high;
-    while (b - a > 4e-15 * (1.0 + b)) {
+    double a = low->phi, b = high, width = 1e-11 * (b - a + 1e-3 * fabs(b));
+    while (b - a > width) {
         cut(region, 0.5 * (a + b), middle);
         if (middle->phi <= a || middle->phi >= b)
             break;
-        if (same_makeup(low->intervals, low->count, middle->intervals, middle->count))
-            a = middle->phi;
-        else
-            b = middle->phi;
+        *(same_makeup(low, middle) ? &a : &b) = middle->phi;
     }
     return 0.5 * (a + b);
 }
 
-static int find_breaks(const ev_region *region, double *breaks)
+static int find_breaks(work *at, double *breaks)
 {
-    slice_at *work = malloc(3 * sizeof *work), *low = work, *high = work + 1;
+    const ev_region *region = at->region;
+    slice_at *low = &at->slices[0], *high = &at->slices[1], *swap;
     int count = 0;
-    if (!work)
-        abort();
+    bool any = false;
+    breaks[count++] = region->seeds[0];
     for (int i = 0; i + 1 < region->seed_count; i++) {
         double from = region->seeds[i], span = region->seeds[i + 1] - from;
-        if (count < BREAK_CAPACITY)
-            breaks[count++] = from;
-        if (span < 1e-12)
+        if (!(span > 1e-12 * (fabs(from) + span)))
             continue;
-        cut(region, from + 1e-9 * span, low);
-        for (int k = 1; k <= SAMPLES_PER_SEED && count < BREAK_CAPACITY; k++) {
+        cut(region, from + 1e-9 * span, high);
+        if (any && (!region->shared || !same_makeup(low, high)) && count < BREAK_CAPACITY)
+            breaks[count++] = from;
+        any = true;
+        for (int k = 1; k <= SAMPLES_PER_SEED; k++) {
+            swap = low, low = high, high = swap;
             double part = k == SAMPLES_PER_SEED ? 1.0 - 1e-9 : (double)k / SAMPLES_PER_SEED;
             cut(region, from + part * span, high);
-            if (!same_makeup(low->intervals, low->count, high->intervals, high->count))
-                breaks[count++] = find_break(region, low, high->phi, work + 2);
-            slice_at *swap = low;
-            low = high;
-            high = swap;
+            if (!same_makeup(low, high) && count < BREAK_CAPACITY)
+                breaks[count++] = find_break(region, low, high->phi, &at->slices[2]);
         }
+        swap = low, low = high, high = swap;
     }
-    breaks[count++] = 2.0 * EV_PI;
-    free(work);
+    breaks[count++] = region->seeds[region->seed_count - 1];
     return count;
+}
+
+static void add_pieces(work *at, const double *breaks, int count, int around)
+{
+    const ev_region *region = at->region;
+    double whole = breaks[count - 1] - breaks[0];
+    bool unbroken = region->shared && count == 2;
+    if (unbroken && region->rows)
+        add_piece(at, breaks[0], whole, around, false);
+    for (int j = 0; unbroken && !region->rows && j < around; j++)
+        add_radius(at, breaks[0] + whole * j / around, whole / around);
+    for (int i = 0; !unbroken && i + 1 < count; i++) {
+        double span = breaks[i + 1] - breaks[i];
+        int share = PIECE_SPARE + (int)(1.5 * around * span / whole);
+        if (span > 1e-12 * whole)
+            add_piece(at, breaks[i], span, region->shared ? share : around, true);
+    }
 }
 
 void ev_region_integrate(const ev_region *region, int radial, int around, ev_region_nodes *nodes)
 {
     double *breaks = malloc((BREAK_CAPACITY + 1) * sizeof *breaks);
-    slice_at *slice = malloc(sizeof *slice);
-    ev_gauss *rules = malloc(2 * sizeof *rules);
-    if (!breaks || !slice || !rules)
+    work *at = malloc(sizeof *at);
+    if (!breaks || !at)
         abort();
-    ev_gauss_make(radial, &rules[0]);
-    ev_gauss_make(around, &rules[1]);
     *nodes = (ev_region_nodes){0};
-    int count = find_breaks(region, breaks);
-    for (int i = 0; i + 1 < count; i++)
-        if (breaks[i + 1] - breaks[i] > 1e-13)
-            integrate_piece(region, &rules[0], &rules[1], breaks[i], breaks[i + 1], slice, nodes);
+    at->region = region;
+    at->nodes = nodes;
+    at->around.count = 0;
+    ev_gauss_make(radial, &at->radial);
+    int count = find_breaks(at, breaks);
+    add_pieces(at, breaks, count, around);
     free(breaks);
-    free(slice);
-    free(rules);
+    free(at);
 }
 
-enum { ID_FROM = 1, ID_TO = 2, ID_EDGE = 3 };
+/* A line along which a margin's zero is sought: a radius (phi fixed) or a circle (r fixed). */
+typedef struct bracket {
+    const ev_margin *margin;
+    bool circle;
+    double fixed; /* the coordinate that stays */
+} bracket;
 
-static double find_edge(const ev_margin_slice *slice, double phi, double low, double high,
-                        bool inside_low)
+static double margin_at(const bracket *line, double at, int *which)
 {
-    for (int i = 0; i < 50 && high - low > 1e-15 * high; i++) {
-        double middle = 0.5 * (low + high);
-        bool inside = slice->margin(slice->context, middle, phi) > 0.0;
-        *(inside == inside_low ? &low : &high) = middle;
+    const ev_margin *margin = line->margin;
+    return line->circle ? margin->value(margin->context, at, line->fixed, which)
+                        : margin->value(margin->context, line->fixed, at, which);
+}
+
+/* False position with the retained end halved (the Illinois rule), bisection when it stalls. */
+static double find_zero(const bracket *line, double a, double fa, double b, double fb, int *which)
+{
+    double width = 1e-13 * fmax(fabs(a), fabs(b)), last = NAN;
+    for (int i = 0; i < 60 && fabs(b - a) > width; i++) {
+        double x = i % 12 == 11 ? 0.5 * (a + b) : a + (b - a) * fa / (fa - fb);
+        if (!(x > fmin(a, b) && x < fmax(a, b)))
+            x = 0.5 * (a + b);
+        double fx = margin_at(line, x, which);
+        if (fx == 0.0 || fabs(x - last) < width)
+            return x;
+        last = x;
+        if ((fx > 0.0) == (fb > 0.0)) {
+            fa *= 0.5;
+        } else {
+            a = b;
+            fa = fb;
+        }
+        b = x;
+        fb = fx;
     }
-    return 0.5 * (low + high);
+    return b;
 }
 
-int ev_slice_by_margin(const void *context, double phi, ev_shadow_interval *intervals)
+enum { ID_EDGE = 1 << 20 };
+
+int ev_clip_by_margin(const ev_margin *margin, double phi, ev_shadow_interval interval,
+                      ev_shadow_interval *out)
 {
-    const ev_margin_slice *slice = context;
-    double span = slice->to - slice->from, last_r = slice->from;
-    bool last = slice->margin(slice->context, slice->from + 1e-12 * span, phi) > 0.0;
-    int count = 0;
-    ev_shadow_interval open = {slice->from, 0.0, EV_FATE_APERTURE, ID_FROM, ID_TO};
-    for (int i = 1; i < EV_MARGIN_SAMPLES; i++) {
-        double r = slice->from + span * i / (EV_MARGIN_SAMPLES - 1);
-        bool now = slice->margin(slice->context, r, phi) > 0.0;
-        if (now != last) {
-            double edge = find_edge(slice, phi, last_r, r, last);
-            if (last) {
+    bracket line = {margin, false, phi};
+    double span = interval.to - interval.from, last_r = interval.from;
+    int which, count = 0;
+    double last = margin_at(&line, interval.from + 1e-12 * span, &which);
+    ev_shadow_interval open = interval;
+    for (int i = 1; i < margin->samples; i++) {
+        double r = interval.from + span * i / (margin->samples - 1);
+        double now = margin_at(&line, r, &which);
+        if ((now > 0.0) != (last > 0.0)) {
+            double edge = find_zero(&line, last_r, last, r, now, &which);
+            if (last > 0.0) {
                 open.to = edge;
-                open.to_id = ID_EDGE;
-                intervals[count++] = open;
+                open.to_id = ID_EDGE + which;
+                out[count++] = open;
             }
-            open = (ev_shadow_interval){edge, 0.0, EV_FATE_APERTURE, ID_EDGE, ID_TO};
+            open = interval;
+            open.from = edge;
+            open.from_id = ID_EDGE + which;
         }
         last_r = r;
         last = now;
     }
-    if (last) {
-        open.to = slice->to;
-        intervals[count++] = open;
+    if (last > 0.0)
+        out[count++] = open;
+    return count;
+}
+
+int ev_margin_changes(const ev_margin *margin, double r, double from, double to, int samples,
+                      double *changes, int capacity)
+{
+    bracket line = {margin, true, r};
+    int which, count = 0;
+    double last_phi = from, last = margin_at(&line, from, &which);
+    for (int i = 1; i <= samples && count < capacity; i++) {
+        double phi = from + (to - from) * i / samples, now = margin_at(&line, phi, &which);
+        if ((now > 0.0) != (last > 0.0))
+            changes[count++] = find_zero(&line, last_phi, last, phi, now, &which);
+        last_phi = phi;
+        last = now;
     }
     return count;
 }

@@ -1,4 +1,4 @@
-/* Gauss-Legendre nodes, and integrals over polar regions cut by exact outlines. */
+/* Gauss-Legendre nodes, and integrals over plane regions cut by exact outlines. */
 #pragma once
 
 #include "optics/shadow.h"
@@ -19,11 +19,13 @@ void ev_gauss_make(int count, ev_gauss *gauss);
 typedef struct ev_region {
     int (*slice)(const void *context, double phi, ev_shadow_interval *intervals);
     const void *context;
-    const double *seeds; /* angles in [0, 2 pi], rising, first 0, last 2 pi: where breaks may be */
+    const double *seeds; /* rising; the first and the last bound phi, between them breaks may be */
     int seed_count;
+    bool rows;   /* phi and r are straight coordinates: areas are dr dphi, not r dr dphi */
+    bool shared; /* see ev_region_integrate */
 } ev_region;
 
-/* Nodes of an integral over the region: polar coordinates, weight (r dr dphi) and tag. */
+/* Nodes of an integral over the region: coordinates, weight (r dr dphi, or dr dphi) and tag. */
 typedef struct ev_region_node {
     double r, phi, weight;
     ev_fate tag;
@@ -36,17 +38,27 @@ typedef struct ev_region_nodes {
 
 /* Gauss nodes on the pieces between breaks, `around` angles a piece and `radial` radii an
  * interval. Angles are bunched toward the ends of a piece, which takes the square-root endings of
- * tangents out of the integrand. */
+ * tangents out of the integrand.
+ *
+ * Every seed ends a piece, unless the region is `shared`: then seeds only hint where breaks may be,
+ * `around` is for the whole of phi, of which a piece gets its share and some to spare, and without
+ * any break a full circle has `around` equal angles and rows have that many plain Gauss nodes. */
 void ev_region_integrate(const ev_region *region, int radial, int around, ev_region_nodes *nodes);
 
-/* A slice function for regions given by a continuous margin: the part of [from, to] along each
- * angle where the margin is positive, its ends found by bisection. context: an ev_margin_slice. */
-typedef struct ev_margin_slice {
-    double (*margin)(const void *context, double r, double phi);
+/* A region's further condition: positive inside, continuous; `which` names the condition that is
+ * nearest to failing, 0 .. 7. */
+typedef struct ev_margin {
+    double (*value)(const void *context, double phi, double r, int *which);
     const void *context;
-    double from, to;
-} ev_margin_slice;
+    int samples; /* looks along an interval, ends included; at least 2 */
+} ev_margin;
 
-enum { EV_MARGIN_SAMPLES = 17 };
+/* The parts of an interval at phi where the margin is positive. Writes at most
+ * margin->samples of them and returns their number. */
+int ev_clip_by_margin(const ev_margin *margin, double phi, ev_shadow_interval interval,
+                      ev_shadow_interval *out);
 
-int ev_slice_by_margin(const void *context, double phi, ev_shadow_interval *intervals);
+/* Angles between from and to where the margin changes sign at the radius r: at most `capacity`,
+ * rising. Looks `samples` times. */
+int ev_margin_changes(const ev_margin *margin, double r, double from, double to, int samples,
+                      double *changes, int capacity);

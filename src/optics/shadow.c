@@ -1,5 +1,5 @@
-/* Outlines before the aperture, cut along radii. Called by the tracer (one point) and the budget
- * (slices); knows nothing of rays. */
+/* Outlines before the aperture, and lines across them. Called by the tracer (one point) and the
+ * budget (slices); knows nothing of rays. */
 #include "optics/shadow.h"
 
 #include <stdlib.h>
@@ -45,52 +45,233 @@ ev_fate ev_shadow_at(const ev_shadows *shadows, double x, double y)
     return EV_FATE_APERTURE;
 }
 
-enum { ID_HOLE = 1, ID_RIM = 2, ID_FIRST = 8, IDS_PER_OBSTACLE = 8 };
-
-typedef struct slice {
-    double inner, outer;
-    ev_shadow_interval raw[2 + EV_SHADOW_BODY_CAPACITY + EV_SHADOW_STRIP_CAPACITY];
-    int count;
-} slice;
-
-/* Clips to the reflecting part of the aperture and keeps what is left. */
-static void add_raw(slice *cut, double from, double to, ev_fate fate, int from_id, int to_id)
+int ev_shadow_count(const ev_shadows *shadows)
 {
-    if (from < cut->inner) {
-        from = cut->inner;
-        from_id = ID_HOLE;
-    }
-    if (to > cut->outer) {
-        to = cut->outer;
-        to_id = ID_RIM;
-    }
-    if (from < to)
-        cut->raw[cut->count++] = (ev_shadow_interval){from, to, fate, from_id, to_id};
+    return (shadows->has_sub ? 1 : 0) + shadows->body_count + shadows->strip_count;
 }
 
-static void cut_outline(const ev_shadows *shadows, const ev_outline *outline, double phi,
-                        ev_fate fate, int id, slice *cut)
+static int outline_count(const ev_shadows *shadows)
 {
-    vec2 q = to_circle(outline, shadows->centre_x - outline->x, -outline->y);
-    vec2 d = to_circle(outline, cos(phi), sin(phi));
+    return (shadows->has_sub ? 1 : 0) + shadows->body_count;
+}
+
+static const ev_outline *outline_at(const ev_shadows *shadows, int obstacle)
+{
+    if (shadows->has_sub)
+        return obstacle == 0 ? &shadows->sub : &shadows->bodies[obstacle - 1];
+    return &shadows->bodies[obstacle];
+}
+
+static const ev_strip *strip_at(const ev_shadows *shadows, int obstacle)
+{
+    return &shadows->strips[obstacle - outline_count(shadows)];
+}
+
+bool ev_shadow_is_strip(const ev_shadows *shadows, int obstacle)
+{
+    return obstacle >= outline_count(shadows);
+}
+
+ev_fate ev_shadow_fate(const ev_shadows *shadows, int obstacle)
+{
+    if (ev_shadow_is_strip(shadows, obstacle))
+        return EV_FATE_SHADOW_STRUTS;
+    return shadows->has_sub && obstacle == 0 ? EV_FATE_SHADOW_SUB : EV_FATE_SHADOW_FEED;
+}
+
+ev_line ev_shadow_line(const ev_shadows *shadows, int obstacle, double u)
+{
+    if (!ev_shadow_is_strip(shadows, obstacle)) {
+        const ev_outline *outline = outline_at(shadows, obstacle);
+        double c = cos(u), s = sin(u);
+        return (ev_line){outline->x, outline->y, c * outline->ux + s * outline->vx,
+                         c * outline->uy + s * outline->vy};
+    }
+    double angle = strip_at(shadows, obstacle)->angle, c = cos(angle), s = sin(angle);
+    return (ev_line){shadows->centre_x - u * s, u * c, c, s};
+}
+
+double ev_shadow_scale(const ev_shadows *shadows, int obstacle)
+{
+    if (ev_shadow_is_strip(shadows, obstacle))
+        return 1.0;
+    const ev_outline *outline = outline_at(shadows, obstacle);
+    return fabs(outline->ux * outline->vy - outline->uy * outline->vx);
+}
+
+void ev_shadow_extent(const ev_shadows *shadows, int obstacle, double extent[2])
+{
+    if (ev_shadow_is_strip(shadows, obstacle)) {
+        const ev_strip *strip = strip_at(shadows, obstacle);
+        extent[0] = fmin(strip->to, shadows->radius) - fmax(strip->from, shadows->hole_radius);
+        extent[1] = 2.0 * strip->half_width;
+        return;
+    }
+    const ev_outline *outline = outline_at(shadows, obstacle);
+    extent[0] = extent[1] = fmax(hypot(outline->ux, outline->uy), hypot(outline->vx, outline->vy));
+}
+
+/* Ends of intervals: the line's own, the hole's, the rim's, then some for every obstacle, one for
+ * each of its curves. */
+enum { ID_OWN = 0, ID_HOLE = 2, ID_RIM = 4, ID_FIRST = 8, IDS = 4 };
+
+typedef struct slice {
+    ev_shadow_interval whole;
+    ev_shadow_interval gaps[2 + EV_SHADOW_BODY_CAPACITY + EV_SHADOW_STRIP_CAPACITY];
+    int gap_count;
+} slice;
+
+/* Where the line is within an outline. */
+static bool cross_outline(const ev_outline *outline, ev_line line, double *from, double *to)
+{
+    vec2 q = to_circle(outline, line.x - outline->x, line.y - outline->y);
+    vec2 d = to_circle(outline, line.dx, line.dy);
     double a = d.x * d.x + d.y * d.y, b = q.x * d.x + q.y * d.y;
     double k = q.x * q.x + q.y * q.y - 1.0, disc = b * b - a * k;
     if (!(disc > 0.0))
-        return;
-    double root = sqrt(disc);
-    add_raw(cut, (-b - root) / a, (-b + root) / a, fate, id, id + 1);
+        return false;
+    double root = sqrt(disc), far = -(b + copysign(root, b));
+    *from = fmin(far / a, k / far);
+    *to = fmax(far / a, k / far);
+    return true;
 }
 
-static void cut_strip(const ev_strip *strip, double phi, int id, slice *cut)
+static ev_outline circle(const ev_shadows *shadows, double radius)
 {
-    double delta = remainder(phi - strip->angle, 2.0 * EV_PI);
-    if (fabs(delta) >= 0.5 * EV_PI)
+    return (ev_outline){.x = shadows->centre_x, .ux = radius, .vy = radius};
+}
+
+static void add_gap(slice *cut, double from, double to, int from_id, int to_id)
+{
+    if (!(from < cut->whole.to && to > cut->whole.from && from < to))
         return;
-    double edge = strip->half_width / fabs(sin(delta)); /* infinite on the strip's own axis */
-    if (edge < strip->to)
-        add_raw(cut, strip->from, edge, EV_FATE_SHADOW_STRUTS, id, delta < 0.0 ? id + 2 : id + 3);
-    else
-        add_raw(cut, strip->from, strip->to, EV_FATE_SHADOW_STRUTS, id, id + 1);
+    int i = cut->gap_count++;
+    for (; i > 0 && cut->gaps[i - 1].from > from; i--)
+        cut->gaps[i] = cut->gaps[i - 1];
+    cut->gaps[i] = (ev_shadow_interval){from, to, EV_FATE_APERTURE, from_id, to_id};
+}
+
+static void add_outline_gap(slice *cut, const ev_outline *outline, ev_line line, int id)
+{
+    double from, to;
+    if (cross_outline(outline, line, &from, &to))
+        add_gap(cut, from, to, id, id + 1);
+}
+
+/* Distance along a strip's line, `across` from its middle, at which it crosses a radius. */
+static double along_at(double radius, double across)
+{
+    return sqrt(fmax(0.0, radius * radius - across * across));
+}
+
+/* One end of a gap and the curve that makes it. */
+typedef struct gap_end {
+    double at;
+    int id;
+} gap_end;
+
+static gap_end later(gap_end a, double at, int id)
+{
+    return at > a.at ? (gap_end){at, id} : a;
+}
+
+static gap_end sooner(gap_end a, double at, int id)
+{
+    return at < a.at ? (gap_end){at, id} : a;
+}
+
+/* Where a strip's line, `across` from its middle, is within another strip: within its radii, on its
+ * side of the centre (along = v c - across s > 0) and between its edges (|v s + across c|). */
+static void add_strip_gap(slice *cut, const ev_strip *strip, const ev_strip *other, double across,
+                          int id)
+{
+    double turn = strip->angle - other->angle, c = cos(turn), s = sin(turn);
+    double low = (-other->half_width - across * c) / s, high = (other->half_width - across * c) / s;
+    gap_end from = {along_at(other->from, across), id}, to = {along_at(other->to, across), id};
+    if (fabs(across) >= other->to)
+        return;
+    if (s != 0.0) {
+        int low_id = s > 0.0 ? id + 1 : id + 2, high_id = s > 0.0 ? id + 2 : id + 1;
+        from = later(from, fmin(low, high), low_id);
+        to = sooner(to, fmax(low, high), high_id);
+    } else if (!(fabs(across) < other->half_width)) {
+        return;
+    }
+    if (c > 0.0)
+        from = later(from, across * s / c, id + 3);
+    else if (c < 0.0)
+        to = sooner(to, across * s / c, id + 3);
+    else if (!(across * s < 0.0))
+        return;
+    add_gap(cut, from.at, to.at, from.id, to.id);
+}
+
+/* The line's own extent, within the rim. */
+static bool begin(const ev_shadows *shadows, int obstacle, double u, ev_line line, slice *cut)
+{
+    cut->whole =
+        (ev_shadow_interval){0.0, 1.0, ev_shadow_fate(shadows, obstacle), ID_OWN, ID_OWN + 1};
+    if (ev_shadow_is_strip(shadows, obstacle)) {
+        const ev_strip *strip = strip_at(shadows, obstacle);
+        cut->whole.from = along_at(strip->from, u);
+        cut->whole.to = fabs(u) < strip->to ? along_at(strip->to, u) : 0.0;
+    }
+    ev_outline rim = circle(shadows, shadows->radius);
+    double from, to;
+    if (!cross_outline(&rim, line, &from, &to))
+        return false;
+    if (from > cut->whole.from) {
+        cut->whole.from = from;
+        cut->whole.from_id = ID_RIM;
+    }
+    if (to < cut->whole.to) {
+        cut->whole.to = to;
+        cut->whole.to_id = ID_RIM + 1;
+    }
+    return cut->whole.from < cut->whole.to;
+}
+
+static int keep_between_gaps(const slice *cut, ev_shadow_interval *intervals)
+{
+    ev_shadow_interval open = cut->whole;
+    int count = 0;
+    for (int i = 0; i < cut->gap_count; i++) {
+        const ev_shadow_interval *gap = &cut->gaps[i];
+        if (gap->from > open.from) {
+            ev_shadow_interval kept = open;
+            kept.to = gap->from;
+            kept.to_id = gap->from_id;
+            intervals[count++] = kept;
+        }
+        if (gap->to > open.from) {
+            open.from = gap->to;
+            open.from_id = gap->to_id;
+        }
+    }
+    if (open.from < open.to)
+        intervals[count++] = open;
+    return count;
+}
+
+int ev_shadow_slice(const ev_shadows *shadows, int obstacle, double u,
+                    ev_shadow_interval intervals[EV_SLICE_CAPACITY])
+{
+    slice cut;
+    ev_line line = ev_shadow_line(shadows, obstacle, u);
+    cut.gap_count = 0;
+    if (!begin(shadows, obstacle, u, line, &cut))
+        return 0;
+    if (shadows->hole_radius > 0.0) {
+        ev_outline hole = circle(shadows, shadows->hole_radius);
+        add_outline_gap(&cut, &hole, line, ID_HOLE);
+    }
+    int outlines = outline_count(shadows);
+    for (int i = 0; i < outlines && i < obstacle; i++)
+        add_outline_gap(&cut, outline_at(shadows, i), line, ID_FIRST + IDS * i);
+    for (int i = outlines; i < obstacle; i++)
+        add_strip_gap(&cut, strip_at(shadows, obstacle), strip_at(shadows, i), u,
+                      ID_FIRST + IDS * i);
+    return keep_between_gaps(&cut, intervals);
 }
 
 static int compare_doubles(const void *a, const void *b)
@@ -99,127 +280,98 @@ static int compare_doubles(const void *a, const void *b)
     return (x > y) - (x < y);
 }
 
-/* The raw interval that rules over r: the lowest fate, by the order of precedence. */
-static const ev_shadow_interval *ruler(const slice *cut, double r)
+typedef struct seeds {
+    double *items;
+    int count, capacity;
+} seeds;
+
+static void add_seed(seeds *to, double value)
 {
-    const ev_shadow_interval *found = NULL;
-    for (int i = 0; i < cut->count; i++)
-        if (cut->raw[i].from < r && r < cut->raw[i].to &&
-            (!found || cut->raw[i].fate < found->fate))
-            found = &cut->raw[i];
-    return found;
+    if (to->count < to->capacity && isfinite(value))
+        to->items[to->count++] = value;
 }
 
-static int id_at(const slice *cut, double r)
+static void add_angle(seeds *to, double angle)
 {
-    for (int i = 0; i < cut->count; i++) {
-        if (cut->raw[i].from == r)
-            return cut->raw[i].from_id;
-        if (cut->raw[i].to == r)
-            return cut->raw[i].to_id;
-    }
-    return 0;
+    add_seed(to, angle - 2.0 * EV_PI * floor(angle / (2.0 * EV_PI)));
 }
 
-int ev_shadow_slice(const ev_shadows *shadows, double phi,
-                    ev_shadow_interval intervals[EV_SLICE_CAPACITY])
+/* Where radii of the first outline touch the second one: d^T K d = 0 with K from the discriminant
+ * of cross_outline, in the angle of the first. */
+static void seed_tangents(const ev_outline *own, const ev_outline *other, seeds *to)
 {
-    slice cut = {.inner = shadows->hole_radius, .outer = shadows->radius};
-    int id = ID_FIRST;
-    if (shadows->has_sub)
-        cut_outline(shadows, &shadows->sub, phi, EV_FATE_SHADOW_SUB, id, &cut);
-    for (int i = 0; i < shadows->body_count; i++)
-        cut_outline(shadows, &shadows->bodies[i], phi, EV_FATE_SHADOW_FEED, id += IDS_PER_OBSTACLE,
-                    &cut);
-    for (int i = 0; i < shadows->strip_count; i++)
-        cut_strip(&shadows->strips[i], phi, id += IDS_PER_OBSTACLE, &cut);
-    double ends[2 * (sizeof cut.raw / sizeof cut.raw[0])];
-    int end_count = 0, count = 0;
-    for (int i = 0; i < cut.count; i++) {
-        ends[end_count++] = cut.raw[i].from;
-        ends[end_count++] = cut.raw[i].to;
-    }
-    qsort(ends, (size_t)end_count, sizeof ends[0], compare_doubles);
-    for (int i = 0; i + 1 < end_count; i++) {
-        const ev_shadow_interval *rule =
-            ends[i] < ends[i + 1] ? ruler(&cut, 0.5 * (ends[i] + ends[i + 1])) : NULL;
-        if (!rule)
-            continue;
-        ev_shadow_interval *last = count ? &intervals[count - 1] : NULL;
-        if (last && last->fate == rule->fate && last->to == ends[i]) {
-            last->to = ends[i + 1];
-            last->to_id = id_at(&cut, ends[i + 1]);
-        } else {
-            intervals[count++] = (ev_shadow_interval){
-                ends[i], ends[i + 1], rule->fate, id_at(&cut, ends[i]), id_at(&cut, ends[i + 1])};
-        }
-    }
-    return count;
-}
-
-static void add_angle(double *angles, int *count, int capacity, double angle)
-{
-    if (*count < capacity && isfinite(angle))
-        angles[(*count)++] = angle - 2.0 * EV_PI * floor(angle / (2.0 * EV_PI));
-}
-
-/* Where radii touch the outline: d^T K d = 0 with K from the discriminant of cut_outline; plus the
- * direction of its centre and the directions in which its four vertices lie. */
-static void seed_outline(const ev_shadows *shadows, const ev_outline *outline, double *angles,
-                         int *count, int capacity)
-{
-    vec2 q = to_circle(outline, shadows->centre_x - outline->x, -outline->y);
-    vec2 cx = to_circle(outline, 1.0, 0.0), cy = to_circle(outline, 0.0, 1.0);
+    vec2 q = to_circle(other, own->x - other->x, own->y - other->y);
+    vec2 cx = to_circle(other, own->ux, own->uy), cy = to_circle(other, own->vx, own->vy);
     double k = q.x * q.x + q.y * q.y - 1.0;
     double qx = q.x * cx.x + q.y * cx.y, qy = q.x * cy.x + q.y * cy.y;
     double kxx = qx * qx - k * (cx.x * cx.x + cx.y * cx.y);
     double kxy = qx * qy - k * (cx.x * cy.x + cx.y * cy.y);
     double kyy = qy * qy - k * (cy.x * cy.x + cy.y * cy.y);
     double disc = kxy * kxy - kxx * kyy;
-    if (k > 0.0 && disc > 0.0) {
-        double root = sqrt(disc);
-        for (int sign = -1; sign <= 1; sign += 2) {
-            /* kyy sin^2 + 2 kxy sin cos + kxx cos^2 = 0, by whichever form does not cancel */
-            double angle = fabs(kyy) > fabs(kxx) ? atan2(-kxy + sign * root, kyy)
-                                                 : atan2(kxx, -kxy + sign * root);
-            add_angle(angles, count, capacity, angle);
-            add_angle(angles, count, capacity, angle + EV_PI);
-        }
-    }
-    double dx = outline->x - shadows->centre_x, dy = outline->y;
-    add_angle(angles, count, capacity, atan2(dy, dx));
+    if (!(k > 0.0 && disc > 0.0))
+        return;
     for (int sign = -1; sign <= 1; sign += 2) {
-        add_angle(angles, count, capacity, atan2(dy + sign * outline->uy, dx + sign * outline->ux));
-        add_angle(angles, count, capacity, atan2(dy + sign * outline->vy, dx + sign * outline->vx));
+        /* kyy sin^2 + 2 kxy sin cos + kxx cos^2 = 0, by whichever form does not cancel */
+        double root = sign * sqrt(disc);
+        double angle = fabs(kyy) > fabs(kxx) ? atan2(-kxy + root, kyy) : atan2(kxx, -kxy + root);
+        add_angle(to, angle);
+        add_angle(to, angle + EV_PI);
     }
 }
 
-static void seed_strip(const ev_shadows *shadows, const ev_strip *strip, double *angles, int *count,
-                       int capacity)
+/* Lines of the strip that touch the outline: its centre's place across, and its half width there.
+ */
+static void seed_touches(const ev_shadows *shadows, const ev_strip *strip, const ev_outline *other,
+                         seeds *to)
 {
-    double radii[2] = {fmax(strip->from, shadows->hole_radius), fmin(strip->to, shadows->radius)};
-    for (int i = 0; i < 2; i++) {
-        double spread = asin(fmin(1.0, strip->half_width / fmax(radii[i], strip->half_width)));
-        add_angle(angles, count, capacity, strip->angle - spread);
-        add_angle(angles, count, capacity, strip->angle + spread);
-    }
+    double c = cos(strip->angle), s = sin(strip->angle);
+    double middle = other->y * c - (other->x - shadows->centre_x) * s;
+    double reach = hypot(other->uy * c - other->ux * s, other->vy * c - other->vx * s);
+    for (int sign = -1; sign <= 1; sign += 2)
+        if (fabs(middle + sign * reach) < strip->half_width)
+            add_seed(to, middle + sign * reach);
 }
 
-int ev_shadow_seeds(const ev_shadows *shadows, double *angles, int capacity)
+/* Corners that another strip's edges make with circles where either of the two ends. */
+static void seed_corners(const ev_shadows *shadows, const ev_strip *own, const ev_strip *other,
+                         seeds *to)
 {
-    int count = 0, kept = 0;
-    for (int quarter = 0; quarter < 4; quarter++)
-        add_angle(angles, &count, capacity - 1, 0.5 * EV_PI * quarter);
-    if (shadows->has_sub)
-        seed_outline(shadows, &shadows->sub, angles, &count, capacity - 1);
-    for (int i = 0; i < shadows->body_count; i++)
-        seed_outline(shadows, &shadows->bodies[i], angles, &count, capacity - 1);
-    for (int i = 0; i < shadows->strip_count; i++)
-        seed_strip(shadows, &shadows->strips[i], angles, &count, capacity - 1);
-    qsort(angles, (size_t)count, sizeof angles[0], compare_doubles);
-    for (int i = 0; i < count; i++)
-        if (kept == 0 || angles[i] - angles[kept - 1] > 1e-12)
-            angles[kept++] = angles[i];
-    angles[kept++] = 2.0 * EV_PI;
-    return kept;
+    const double radii[] = {own->from,      own->to, other->from, other->to, shadows->hole_radius,
+                            shadows->radius};
+    double turn = other->angle - own->angle, c = cos(turn), s = sin(turn);
+    for (int i = 0; i < 6; i++)
+        for (int side = -1; side <= 1; side += 2) {
+            double edge = side * other->half_width, along = along_at(radii[i], edge);
+            double across = along * s + edge * c;
+            if (along * c - edge * s > 0.0 && fabs(across) < own->half_width)
+                add_seed(to, across);
+        }
+}
+
+enum { BASE_ANGLES = 8 };
+
+int ev_shadow_seeds(const ev_shadows *shadows, int obstacle, double *items, int capacity)
+{
+    seeds found = {items, 0, capacity - 1};
+    bool strip = ev_shadow_is_strip(shadows, obstacle);
+    double half = strip ? strip_at(shadows, obstacle)->half_width : 0.0,
+           end = strip ? half : 2.0 * EV_PI;
+    add_seed(&found, -half);
+    for (int i = 1; i < BASE_ANGLES && !strip; i++)
+        add_seed(&found, end * i / BASE_ANGLES);
+    for (int i = -2; i < outline_count(shadows) && i < obstacle; i++) {
+        ev_outline round = circle(shadows, i == -1 ? shadows->radius : shadows->hole_radius);
+        if (i == -2 && shadows->hole_radius == 0.0)
+            continue;
+        const ev_outline *other = i < 0 ? &round : outline_at(shadows, i);
+        if (strip)
+            seed_touches(shadows, strip_at(shadows, obstacle), other, &found);
+        else
+            seed_tangents(outline_at(shadows, obstacle), other, &found);
+    }
+    for (int i = outline_count(shadows); strip && i < obstacle; i++)
+        seed_corners(shadows, strip_at(shadows, obstacle), strip_at(shadows, i), &found);
+    qsort(items, (size_t)found.count, sizeof items[0], compare_doubles);
+    items[found.count++] = end;
+    return found.count;
 }

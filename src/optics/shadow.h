@@ -2,8 +2,9 @@
  *
  * Plane-wave shadows: the subreflector's rim and the feed bodies are projected along z; struts are
  * straight strips about the aperture centre, cut by the circles of their radii. Precedence, once a
- * point over the hole is out: subreflector, feed body, struts. Shadow integrals run on the exact
- * outlines (ev_shadow_slice), never on a mask. */
+ * point over the hole is out: subreflector, feed body, struts. Shadow integrals never run on a
+ * mask: each obstacle is swept by lines of its own (radii of an outline from its own centre, lines
+ * along a strip), exactly cut where another obstacle rules (ev_shadow_slice). */
 #pragma once
 
 #include "base/vec3.h"
@@ -48,19 +49,36 @@ typedef struct ev_shadows {
 /* Fate of a point of the aperture plane: aperture, past_main (hole or outside), or a shadow. */
 ev_fate ev_shadow_at(const ev_shadows *shadows, double x, double y);
 
-/* Along the radius at angle phi from the aperture centre, the shadowed intervals [from, to] with
- * their fate, not overlapping, rising; the hole and what lies outside the rim are left out.
- * Returns their number. */
+/* Obstacles in order of precedence: sub, bodies, strips. */
+int ev_shadow_count(const ev_shadows *shadows);
+ev_fate ev_shadow_fate(const ev_shadows *shadows, int obstacle);
+bool ev_shadow_is_strip(const ev_shadows *shadows, int obstacle);
+
+/* A line of an obstacle's sweep: the points (x + v dx, y + v dy). Outlines: u is an angle in
+ * [0, 2 pi), v in [0, 1] from the centre to the outline, and areas are `scale` v dv du. Strips: u
+ * is the place across, in [-half width, half width], v the distance along, and areas are dv du. */
+typedef struct ev_line {
+    double x, y, dx, dy;
+} ev_line;
+
+ev_line ev_shadow_line(const ev_shadows *shadows, int obstacle, double u);
+double ev_shadow_scale(const ev_shadows *shadows, int obstacle);
+
+/* Size of an obstacle along its lines and across them, m, for choosing numbers of nodes. */
+void ev_shadow_extent(const ev_shadows *shadows, int obstacle, double extent[2]);
+
 typedef struct ev_shadow_interval {
     double from, to;
     ev_fate fate;
     int from_id, to_id; /* which curve ends it there: equal ids, same make-up */
 } ev_shadow_interval;
 
-int ev_shadow_slice(const ev_shadows *shadows, double phi,
+/* What of line u the obstacle shadows and nothing that ranks before it does: rising, not
+ * overlapping; the hole and what lies outside the rim are left out. Returns their number. */
+int ev_shadow_slice(const ev_shadows *shadows, int obstacle, double u,
                     ev_shadow_interval intervals[EV_SLICE_CAPACITY]);
 
-/* Angles (rad, rising, in [0, 2 pi]; first 0, last 2 pi) near which the make-up of a slice can
- * change: ends of strips, tangents and extremes of outlines. Crossings between outlines fall
- * between them and are found by bisection (quadrature.h). Returns their number. */
-int ev_shadow_seeds(const ev_shadows *shadows, double *angles, int capacity);
+/* Values of u, rising, the first and the last the ends of the sweep, near which the make-up of a
+ * slice can change: tangents of other outlines. Crossings lie between them and are found by
+ * bisection (quadrature.h). Returns their number. */
+int ev_shadow_seeds(const ev_shadows *shadows, int obstacle, double *seeds, int capacity);

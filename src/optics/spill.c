@@ -62,136 +62,187 @@ double ev_spill_below_horizon(const ev_antenna *antenna, int index)
 
 /* A ray from the feed to a point of the subreflector and on. */
 typedef struct sub_ray {
-    ev_vec3 out, back; /* unit, leaving the feed and leaving the sub */
-    double density;    /* share of the power per unit of (r dr dt) on the rim disc */
-    double miss;       /* > 0 where it misses the main reflector's rim or falls in its hole */
+    ev_vec3 q, normal, out; /* out: unit, leaving the feed */
+    double distance;
 } sub_ray;
 
-static double miss_margin(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
+static sub_ray reach(const ev_antenna *antenna, int index, double r, double t)
+{
+    sub_ray ray = {.q = ev_sub_point(&antenna->sub, r, t)};
+    ev_vec3 arm = ev_vec3_sub(ray.q, antenna->feeds[index].position);
+    ray.normal = ev_conic_normal(&antenna->sub.placed, ray.q);
+    ray.distance = ev_vec3_length(arm);
+    ray.out = ev_vec3_scale(1.0 / ray.distance, arm);
+    return ray;
+}
+
+/* Share of the power per unit of (r dr dt) on the rim disc. */
+static double density(const ev_antenna *antenna, int index, double r, double t)
+{
+    const ev_sub *sub = &antenna->sub;
+    sub_ray ray = reach(antenna, index, r, t);
+    /* area on the surface over area on the rim plane: 1 / |n . rim normal|, as designed */
+    ev_vec3 level = ev_conic_normal(&sub->nominal, ev_sub_unplace(sub, ray.q));
+    double plane = (sub->semi_long + sub->oversize) * (sub->semi_short + sub->oversize);
+    double solid = fabs(ev_vec3_dot(ray.out, ray.normal)) / (ray.distance * ray.distance) * plane /
+                   fabs(ev_vec3_dot(level, sub->rim_normal));
+    return ev_feed_launch(antenna, index, ray.out).level * solid / (4.0 * EV_PI);
+}
+
+/* How far outside the main reflector's rim a ray comes down, in radii; < 0 within it. */
+static double miss(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
 {
     double t[2];
     int count = ev_conic_intersect(&antenna->main, from, direction, t);
     if (count == 0 || t[count - 1] <= 0.0)
         return 1.0;
     ev_vec3 hit = ev_vec3_along(from, t[0] > 0.0 ? t[0] : t[1], direction);
-    double r = hypot(hit.x - antenna->offset, hit.y);
-    return fmax(r / antenna->radius - 1.0,
-                antenna->hole_radius / antenna->radius - r / antenna->radius);
-}
-
-static sub_ray launch(const ev_antenna *antenna, int index, double r, double t)
-{
-    const ev_sub *sub = &antenna->sub;
-    ev_vec3 from = antenna->feeds[index].position, q = ev_sub_point(sub, r, t);
-    ev_vec3 arm = ev_vec3_sub(q, from), n = ev_conic_normal(&sub->placed, q);
-    double distance = ev_vec3_length(arm);
-    ev_vec3 out = ev_vec3_scale(1.0 / distance, arm);
-    /* area on the surface over area on the rim plane: 1 / |n . rim normal|, as designed */
-    ev_vec3 level = ev_conic_normal(&sub->nominal, ev_sub_unplace(sub, q));
-    double plane = (sub->semi_long + sub->oversize) * (sub->semi_short + sub->oversize);
-    double solid = fabs(ev_vec3_dot(out, n)) / (distance * distance) * plane /
-                   fabs(ev_vec3_dot(level, sub->rim_normal));
-    sub_ray ray = {.out = out, .back = ev_vec3_reflect(out, n)};
-    ray.density = ev_feed_launch(antenna, index, out).level * solid / (4.0 * EV_PI);
-    ray.miss = miss_margin(antenna, q, ray.back);
-    return ray;
+    return hypot(hit.x - antenna->offset, hit.y) / antenna->radius - 1.0;
 }
 
 /* Conditions on the rim disc. */
-typedef struct disc_cut {
+typedef struct disc {
     const ev_antenna *antenna;
     int feed;
     bool lit, missed, out_ground, back_ground;
-} disc_cut;
+    ev_margin margin;
+} disc;
 
-static double disc_margin(const void *context, double r, double t)
+static void take_least(double *least, int *which, double value, int condition)
 {
-    const disc_cut *cut = context;
+    if (value < *least) {
+        *least = value;
+        *which = condition;
+    }
+}
+
+static double disc_margin(const void *context, double t, double r, int *which)
+{
+    const disc *cut = context;
     const ev_antenna *antenna = cut->antenna;
-    sub_ray ray = launch(antenna, cut->feed, r, t);
-    ev_vec3 up = ev_antenna_up(antenna);
+    *which = 0;
+    if (!cut->lit && !cut->missed && !cut->out_ground && !cut->back_ground)
+        return 1.0;
+    sub_ray ray = reach(antenna, cut->feed, r, t);
+    ev_vec3 up = ev_antenna_up(antenna), back = ev_vec3_reflect(ray.out, ray.normal);
     const ev_feed *feed = &antenna->feeds[cut->feed];
     double least = INFINITY;
     if (cut->lit)
-        least = fmin(least, feed->pattern.end - ev_vec3_angle(ray.out, feed->axis));
+        take_least(&least, which, feed->pattern.end - ev_vec3_angle(ray.out, feed->axis), 1);
     if (cut->missed)
-        least = fmin(least, ray.miss - 1e-10);
+        take_least(&least, which, miss(antenna, ray.q, back) - 1e-10, 2);
     if (cut->out_ground)
-        least = fmin(least, -ev_vec3_dot(ray.out, up));
+        take_least(&least, which, -ev_vec3_dot(ray.out, up), 3);
     if (cut->back_ground)
-        least = fmin(least, -ev_vec3_dot(ray.back, up));
+        take_least(&least, which, -ev_vec3_dot(back, up), 4);
     return least;
 }
 
-static double disc_power(const disc_cut *cut, ev_order order)
+static int disc_slice(const void *context, double t, ev_shadow_interval *intervals)
 {
-    static const double quarters[5] = {0.0, 0.5 * EV_PI, EV_PI, 1.5 * EV_PI, 2.0 * EV_PI};
-    ev_margin_slice slice = {.margin = disc_margin, .context = cut, .from = 0.0, .to = 1.0};
+    const disc *cut = context;
+    ev_shadow_interval whole = {0.0, 1.0, EV_FATE_APERTURE, 0, 1};
+    return ev_clip_by_margin(&cut->margin, t, whole, intervals);
+}
+
+enum { DISC_SEEDS = 8, DISC_LOOKS = 180, DISC_CHANGES = 32, DISC_SAMPLES = 9 };
+
+static int compare_doubles(const void *a, const void *b)
+{
+    double x = *(const double *)a, y = *(const double *)b;
+    return (x > y) - (x < y);
+}
+
+static double disc_power(disc *cut, ev_order order)
+{
+    double seeds[DISC_SEEDS + DISC_CHANGES + 1], sum = 0.0;
+    int count = 0;
+    cut->margin = (ev_margin){.value = disc_margin, .context = cut, .samples = DISC_SAMPLES};
+    for (int i = 0; i < DISC_SEEDS; i++)
+        seeds[count++] = 2.0 * EV_PI * i / DISC_SEEDS;
+    count += ev_margin_changes(&cut->margin, 1.0, 0.0, 2.0 * EV_PI, DISC_LOOKS, seeds + count,
+                               DISC_CHANGES);
+    qsort(seeds, (size_t)count, sizeof seeds[0], compare_doubles);
+    seeds[count++] = 2.0 * EV_PI;
     ev_region region = {
-        .slice = ev_slice_by_margin, .context = &slice, .seeds = quarters, .seed_count = 5};
+        .slice = disc_slice, .context = cut, .seeds = seeds, .seed_count = count, .shared = true};
     ev_region_nodes nodes;
-    double sum = 0.0;
     ev_region_integrate(&region, order.radial, order.around, &nodes);
     for (int i = 0; i < nodes.count; i++)
         sum += nodes.items[i].weight *
-               launch(cut->antenna, cut->feed, nodes.items[i].r, nodes.items[i].phi).density;
+               density(cut->antenna, cut->feed, nodes.items[i].r, nodes.items[i].phi);
     free(nodes.items);
     return sum;
 }
 
-/* What the rim disc shows about its rim and its inside, coarsely: is any of it missed, unlit... */
-typedef struct disc_look {
-    bool missed, unlit, out_below, out_above, back_below;
-} disc_look;
+/* Whether the conditions hold anywhere, and everywhere, on the disc: looks along its rim, where
+ * parts are cut off first, and here and there inside. */
+typedef struct seen {
+    bool any, all;
+} seen;
 
-enum { LOOK_RADII = 17, LOOK_ANGLES = 24 };
+enum { LOOK_RADII = 4 };
 
-static disc_look look(const ev_antenna *antenna, int index)
+static seen look(const disc *cut)
 {
-    disc_look seen = {0};
-    const ev_feed *feed = &antenna->feeds[index];
-    ev_vec3 up = ev_antenna_up(antenna);
-    for (int i = 0; i < LOOK_RADII; i++)
-        for (int k = 0; k < LOOK_ANGLES; k++) {
-            sub_ray ray =
-                launch(antenna, index, i / (LOOK_RADII - 1.0), 2.0 * EV_PI * k / LOOK_ANGLES);
-            seen.missed |= ray.miss > 1e-10;
-            seen.unlit |= ev_vec3_angle(ray.out, feed->axis) > feed->pattern.end;
-            *(ev_vec3_dot(ray.out, up) < 0.0 ? &seen.out_below : &seen.out_above) = true;
-            seen.back_below |= ev_vec3_dot(ray.back, up) < 0.0;
+    seen found = {false, true};
+    int which;
+    for (int i = 0; i <= LOOK_RADII; i++) {
+        int angles = i == LOOK_RADII ? DISC_LOOKS : 6 * i + 1;
+        for (int k = 0; k < angles; k++) {
+            double t = 2.0 * EV_PI * k / angles;
+            bool holds = disc_margin(cut, t, (double)i / LOOK_RADII, &which) > 0.0;
+            found.any |= holds;
+            found.all &= holds;
         }
-    return seen;
+    }
+    return found;
 }
 
-static double whole_disc(const ev_antenna *antenna, int feed, ev_order order)
+/* Power on the disc under conditions; nothing is integrated where none can be. */
+static double power_where(disc cut, ev_order order)
 {
-    ev_gauss gauss;
-    double sum = 0.0;
-    ev_gauss_make(order.radial, &gauss);
-    for (int k = 0; k < order.around; k++)
-        for (int i = 0; i < gauss.count; i++)
-            sum += gauss.weight[i] * gauss.x[i] *
-                   launch(antenna, feed, gauss.x[i], 2.0 * EV_PI * k / order.around).density;
-    return sum * 2.0 * EV_PI / order.around;
+    return look(&cut).any ? disc_power(&cut, order) : 0.0;
+}
+
+/* What falls through the hole, and (ground) what of it is heading below the horizon. */
+static double hole_power(const ev_antenna *antenna, int feed, ev_order order, bool lit, bool ground)
+{
+    double part = antenna->hole_radius / antenna->radius;
+    ev_order own = {6 + (int)(order.radial * part), 16 + (int)(order.around * part)};
+    ev_cut cut = {.antenna = antenna, .feed = feed, .lit = lit, .landing = ground};
+    ev_nodes nodes;
+    ev_nodes_ring(&cut, 0.0, antenna->hole_radius, own, &nodes);
+    for (int i = 0; i < nodes.count && !cut.inside; i++)
+        cut.inside = nodes.items[i].sub_inside < 0.1;
+    if (cut.inside) {
+        ev_nodes_free(&nodes);
+        ev_nodes_ring(&cut, 0.0, antenna->hole_radius, own, &nodes);
+    }
+    double power = ev_nodes_power(&nodes);
+    ev_nodes_free(&nodes);
+    return power;
 }
 
 ev_sub_shares ev_spill_sub_shares(const ev_antenna *antenna, int feed)
 {
-    ev_sub_shares shares = {0};
-    disc_look seen = look(antenna, feed);
-    ev_order whole = ev_order_for(antenna, feed, 0.0), cut_order = {whole.radial, whole.around / 4};
-    disc_cut cut = {.antenna = antenna, .feed = feed, .lit = true};
-    shares.caught = seen.unlit ? disc_power(&cut, cut_order) : whole_disc(antenna, feed, whole);
-    if (seen.missed) {
-        cut.missed = true;
-        shares.missed = disc_power(&cut, cut_order);
-        cut.back_ground = true;
-        if (antenna->site.present && seen.back_below)
-            shares.missed_ground = disc_power(&cut, cut_order);
-    }
-    if (!antenna->site.present || !seen.out_below)
+    ev_order order = ev_order_for(antenna, feed, 0.0);
+    bool site = antenna->site.present, ends = antenna->feeds[feed].pattern.end < EV_PI;
+    disc bare = {.antenna = antenna, .feed = feed, .lit = ends};
+    bare.lit = ends && !look(&bare).all;
+    disc missed = bare, below = bare;
+    missed.missed = true;
+    below.out_ground = true;
+    ev_sub_shares shares = {.caught = disc_power(&bare, order),
+                            .missed = power_where(missed, order)};
+    if (antenna->hole_radius > 0.0)
+        shares.missed += hole_power(antenna, feed, order, bare.lit, false);
+    if (!site)
         return shares;
-    cut = (disc_cut){.antenna = antenna, .feed = feed, .lit = true, .out_ground = true};
-    shares.caught_ground = seen.out_above ? disc_power(&cut, cut_order) : shares.caught;
+    shares.caught_ground = power_where(below, order);
+    missed.back_ground = true;
+    shares.missed_ground = shares.missed > 0.0 ? power_where(missed, order) : 0.0;
+    if (antenna->hole_radius > 0.0)
+        shares.missed_ground += hole_power(antenna, feed, order, bare.lit, true);
     return shares;
 }

@@ -115,11 +115,14 @@ static uint64_t hash_layout(const ev_words *words, double size, double limit, in
     return hash;
 }
 
-static PangoAttrList *make_attributes(const ev_words *words)
+static PangoAttrList *make_attributes(const ev_words *words, double size)
 {
     PangoAttrList *list = pango_attr_list_new();
     /* Digits of one width: proportional ones jitter while a number runs. */
     pango_attr_list_insert(list, pango_attr_font_features_new("tnum=1"));
+    if (!words->font.display && size >= EV_LARGE_TYPE)
+        pango_attr_list_insert(
+            list, pango_attr_letter_spacing_new((int)(EV_LARGE_TRACKING * size * PANGO_SCALE)));
     for (int i = 0; i < words->bold_count; ++i) {
         PangoAttribute *bold = pango_attr_weight_new(PANGO_WEIGHT_SEMIBOLD);
         bold->start_index = (guint)words->bold[i][0];
@@ -149,7 +152,7 @@ static void set_layout(text_cache *cache, text_layout *slot, const ev_words *wor
     pango_font_description_set_absolute_size(font, size * PANGO_SCALE);
     pango_layout_set_font_description(layout, font);
     pango_font_description_free(font);
-    PangoAttrList *attributes = make_attributes(words);
+    PangoAttrList *attributes = make_attributes(words, size);
     pango_layout_set_attributes(layout, attributes);
     pango_attr_list_unref(attributes);
     pango_layout_set_text(layout, words->string, -1);

@@ -57,6 +57,8 @@
     "a gaussian pattern has no exponent ('%s'); give its edge_taper, for example 'edge_taper: 11 " \
     "dB'"
 
+#define EV_MESSAGE_taper_on_table "'%s' has no effect: the table is the whole pattern"
+
 /* Values */
 #define EV_MESSAGE_not_mapping "'%s' takes keys with values below it, not %s"
 #define EV_MESSAGE_not_list "'%s' takes a list, each entry starting with '-', not %s"

@@ -144,16 +144,16 @@ void ev_buffer_add(ev_buffer *buffer, const char *text, size_t size)
 
 void ev_buffer_format(ev_buffer *buffer, const char *format, ...)
 {
-    va_list arguments, again;
+    va_list arguments;
     va_start(arguments, format);
-    va_copy(again, arguments);
     int length = vsnprintf(NULL, 0, format, arguments);
     va_end(arguments);
-    if (length > 0) {
-        char *text = ev_allocate((size_t)length + 1);
-        vsnprintf(text, (size_t)length + 1, format, again);
-        ev_buffer_add(buffer, text, (size_t)length);
-        free(text);
-    }
-    va_end(again);
+    if (length <= 0)
+        return;
+    char *text = ev_allocate((size_t)length + 1);
+    va_start(arguments, format);
+    vsnprintf(text, (size_t)length + 1, format, arguments);
+    va_end(arguments);
+    ev_buffer_add(buffer, text, (size_t)length);
+    free(text);
 }

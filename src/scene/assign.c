@@ -9,8 +9,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { ADDRESS_CAPACITY = 2 * EV_NAME_CAPACITY };
-
 /* Copies without the blanks around it. */
 static bool copy_trimmed(char *to, size_t size, const char *from, size_t length)
 {
@@ -66,7 +64,7 @@ static bool assign_list(ev_design *design, ev_parameter_ref ref, const ev_field 
 static bool assign_value(ev_design *design, int selected_feed, const char *address,
                          const char *text, ev_diagnostics *diagnostics)
 {
-    char first_part[ADDRESS_CAPACITY + 2], nearest[ADDRESS_CAPACITY], wanted[300];
+    char first_part[EV_ADDRESS_CAPACITY + 2], nearest[EV_ADDRESS_CAPACITY], wanted[300];
     ev_parameter_ref ref;
     bool is_row = ev_parameter_find(design, selected_feed, address, &ref, nearest);
     snprintf(first_part, sizeof first_part, "%s.x", address);
@@ -88,11 +86,11 @@ static bool assign_value(ev_design *design, int selected_feed, const char *addre
 bool ev_design_assign(ev_design *design, int selected_feed, const char *assignment,
                       ev_diagnostics *diagnostics)
 {
-    char address[ADDRESS_CAPACITY], text[EV_CANONICAL_CAPACITY];
+    char address[EV_ADDRESS_CAPACITY], text[EV_CANONICAL_CAPACITY];
     const char *equals = strchr(assignment, '=');
     size_t length = equals ? (size_t)(equals - assignment) : 0;
     if (!copy_trimmed(address, sizeof address, assignment, length)) {
-        char shown[ADDRESS_CAPACITY];
+        char shown[EV_ADDRESS_CAPACITY];
         ev_text_copy(shown, sizeof shown, assignment);
         ev_report(diagnostics, EV_SEVERITY_ERROR, assignment_form, NULL, shown,
                   "feed.defocus=5 mm");

@@ -5,6 +5,7 @@
 #include "base/message.h"
 #include "base/text.h"
 
+#include <assert.h>
 #include <libfyaml.h>
 #include <stdlib.h>
 #include <string.h>
@@ -183,6 +184,7 @@ static void open_node(builder *b, struct fy_event *event, ev_node_kind kind)
 static void close_node(builder *b, struct fy_event *event)
 {
     ev_node *node = b->open;
+    assert(node != NULL); /* libfyaml pairs its events */
     if (node->flow)
         b->last_end = mark_or(fy_event_end_mark(event), b->last_end);
     node->end = b->last_end;

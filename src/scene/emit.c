@@ -60,7 +60,7 @@ static bool says(const ev_spelling *spelling, const ev_parameter *row, double va
 void ev_emit_row(ev_buffer *buffer, const ev_emitter *emitter, const ev_parameter *row,
                  double value, const char *unit_from)
 {
-    char address[2 * EV_NAME_CAPACITY], unit[16] = "", text[128];
+    char address[EV_ADDRESS_CAPACITY], unit[16] = "", text[128];
     ev_parameter_address(emitter->design, (ev_parameter_ref){row, emitter->index}, address,
                          sizeof address);
     for (const ev_spelling *s = emitter->spellings; s; s = s->next) {

@@ -44,7 +44,7 @@ static bool find_exactly(const ev_design *design, int selected_feed, const char 
             return true;
         }
         for (int entry = 0; section->is_list && entry < entries; entry++) {
-            char own[2 * EV_NAME_CAPACITY];
+            char own[EV_ADDRESS_CAPACITY];
             *ref = (ev_parameter_ref){row, entry};
             ev_parameter_address(design, *ref, own, sizeof own);
             if (strcmp(own, address) == 0)
@@ -65,12 +65,12 @@ static void find_nearest(const ev_design *design, const char *address, char *nea
         if (entries > 0)
             ev_nearest_offer(&best, address, row->name);
         for (int entry = 0; section->is_list && entry < entries; entry++) {
-            char own[2 * EV_NAME_CAPACITY];
+            char own[EV_ADDRESS_CAPACITY];
             ev_parameter_address(design, (ev_parameter_ref){row, entry}, own, sizeof own);
             ev_nearest_offer(&best, address, own);
         }
     }
-    ev_text_copy(nearest, 2 * EV_NAME_CAPACITY, best.word);
+    ev_text_copy(nearest, EV_ADDRESS_CAPACITY, best.word);
 }
 
 bool ev_parameter_find(const ev_design *design, int selected_feed, const char *address,
@@ -141,7 +141,13 @@ bool ev_parameter_set_text(ev_design *design, ev_parameter_ref ref, const char *
     }
     if (!ev_value_read(ref.parameter, text, typed, diagnostics, &value))
         return false;
-    ev_parameter_set(design, ref, value);
+    ev_design trial = *design;
+    ev_parameter_set(&trial, ref, value);
+    if (ev_parameter_is_derived(&trial, ref)) { /* settled away: the pattern has no such number */
+        ev_report(diagnostics, EV_SEVERITY_ERROR, exponent_on_gaussian, NULL, text);
+        return false;
+    }
+    *design = trial;
     return true;
 }
 

@@ -47,6 +47,8 @@ typedef struct ev_parameter {
 int ev_parameter_count(void);
 const ev_parameter *ev_parameter_at(int index);
 
+enum { EV_ADDRESS_CAPACITY = 2 * EV_NAME_CAPACITY };
+
 /* A row and, for lists, which member. */
 typedef struct ev_parameter_ref {
     const ev_parameter *parameter;
@@ -54,7 +56,7 @@ typedef struct ev_parameter_ref {
 } ev_parameter_ref;
 
 /* Resolves an address against the lists of a design. False when there is none; `nearest` (may be
- * NULL, else of 2 * EV_NAME_CAPACITY chars) then gets the nearest legal address. */
+ * NULL, else of EV_ADDRESS_CAPACITY chars) then gets the nearest legal address. */
 bool ev_parameter_find(const ev_design *design, int selected_feed, const char *address,
                        ev_parameter_ref *ref, char *nearest);
 

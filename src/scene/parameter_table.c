@@ -26,10 +26,9 @@
     .kind = EV_VALUE_COUNT, .low = (LOW), .high = (HIGH), .initial = (INITIAL)
 #define CHOICE(WORDS, LAST, INITIAL)                                                               \
     .kind = EV_VALUE_CHOICE, .words = (WORDS), .low = 0, .high = (LAST), .initial = (INITIAL)
-#define TEXT .kind = EV_VALUE_TEXT
 #define GIVEN(GROUP, TYPE, MEMBER, VALUE)                                                          \
     .choice = (GROUP), .given = (VALUE), .given_offset = offsetof(TYPE, MEMBER)
-#define OF_THREE(WHICH) .of_three = 1 + (WHICH)
+#define OF_THREE(WHICH) .of_three = (1 + (WHICH))
 
 static const char *const shape_words[] = {"hyperboloid", "ellipsoid", NULL};
 static const char *const pattern_words[] = {"cos_power", "gaussian", "table", NULL};
@@ -38,8 +37,8 @@ static const char *const aim_words[] = {"bisect", "centre", EV_WORD_DIRECTION, N
 static const char *const toward_words[] = {EV_WORD_DIRECTION, "peak", NULL};
 
 const ev_parameter ev_parameter_table[] = {
-    {"title", "Title", DESIGN(title), TEXT, .example = "Rooftop terminal, 1.2 m offset",
-     .meaning = "what the antenna is called"},
+    {"title", "Title", DESIGN(title), .kind = EV_VALUE_TEXT,
+     .example = "Rooftop terminal, 1.2 m offset", .meaning = "what the antenna is called"},
     {"frequency", "Frequency", DESIGN(frequencies[0]), QUANTITY(FREQUENCY, 1e6, 1e13, 12e9),
      .list_capacity = EV_FREQUENCY_CAPACITY,
      .list_count_offset = offsetof(ev_design, frequency_count), .required = true,
@@ -102,7 +101,7 @@ const ev_parameter ev_parameter_table[] = {
      QUANTITY(ANGLE, -90 * DEG, 90 * DEG, 0.0), .example = "0 deg",
      .meaning = "then about antenna y through its vertex"},
 
-    {"feed.name", "Feed", FEED(name), TEXT, .example = "main",
+    {"feed.name", "Feed", FEED(name), .kind = EV_VALUE_TEXT, .example = "main",
      .meaning = "how addresses call this feed"},
     {"feed.pattern", "Pattern", FEED(pattern), CHOICE(pattern_words, 2, 0), .example = "cos_power",
      .meaning = "cos_power, gaussian, or table (a CSV file)"},
@@ -112,7 +111,7 @@ const ev_parameter ev_parameter_table[] = {
     {"feed.edge_taper", "Edge taper", FEED(edge_taper), QUANTITY(LEVEL, 0.0, 300.0, 11.0),
      GIVEN("taper", ev_feed_design, taper_given, EV_GIVEN_EDGE_TAPER), .example = "11 dB",
      .meaning = "how far the pattern has fallen at the half extent of what it lights"},
-    {"feed.table", "Pattern table", FEED(table_path), TEXT, .example = "horn.csv",
+    {"feed.table", "Pattern table", FEED(table_path), .kind = EV_VALUE_TEXT, .example = "horn.csv",
      .meaning =
          "CSV file of the pattern, relative to the scene: theta_deg, e_db, h_db[, phase_deg]"},
     {"feed.polarization", "Polarization", FEED(polarization), CHOICE(polarization_words, 3, 0),
@@ -152,7 +151,7 @@ const ev_parameter ev_parameter_table[] = {
     {"feed.body", "Feed body", FEED(body), QUANTITY(LENGTH, 0.0, 1e3, 0.0), .example = "60 mm",
      .meaning = "diameter of the shadow it casts"},
 
-    {"strut.name", "Struts", STRUT(name), TEXT, .example = "legs",
+    {"strut.name", "Struts", STRUT(name), .kind = EV_VALUE_TEXT, .example = "legs",
      .meaning = "how addresses call these struts"},
     {"strut.count", "Strut count", STRUT(count), COUNT(1, 64, 4), .example = "4",
      .meaning = "copies, turned evenly about the aperture centre"},

@@ -88,10 +88,11 @@ static void report_problem(const ev_design *design, const ev_problem *problem,
         const ev_section *section = ev_section_of(ref.parameter);
         const ev_node *node = ev_document_find_row(
             document, ref.parameter, ev_section_entry_name(design, section, ref.index));
-        located = ev_document_locate(document, node->start, node->end);
-    } else if (document) {
-        located.place.file = document->name;
+        if (node)
+            located = ev_document_locate(document, node->start, node->end);
     }
+    if (document)
+        located.place.file = document->name;
     ev_diagnose(diagnostics, severity, w->id, document ? &located.place : NULL, "%s", text.data);
     free(located.line);
     free(text.data);

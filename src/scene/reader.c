@@ -6,6 +6,7 @@
 #include "base/text.h"
 #include "scene/value.h"
 
+#include <assert.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -181,12 +182,18 @@ static void check_two_of_three(reader *r, const ev_node *mapping, const ev_secti
                        seen == 1 ? "here is only one" : "here is none");
 }
 
+/* What stands for a mapping as a whole: its key, in a list its first member. */
+static const ev_node *find_handle(const ev_node *mapping)
+{
+    if (mapping->key)
+        return mapping->key;
+    return mapping->first ? mapping->first->key : mapping;
+}
+
 static void check_required(reader *r, const ev_node *mapping, const ev_section *section)
 {
     char where[64], rivals[160], example[160];
-    const ev_node *at = mapping->key     ? mapping->key
-                        : mapping->first ? mapping->first->key
-                                         : mapping;
+    const ev_node *at = find_handle(mapping);
     const char *reported = "";
     int cursor = 0;
     ev_field field;
@@ -207,9 +214,16 @@ static void check_required(reader *r, const ev_node *mapping, const ev_section *
     }
 }
 
-/* A gaussian is fixed by its taper alone. */
-static void check_gaussian(reader *r, const ev_node *mapping, const ev_feed_design *feed)
+/* A gaussian is fixed by its taper alone, a table by nothing else. */
+static void check_taper(reader *r, const ev_node *mapping, const ev_feed_design *feed)
 {
+    static const char *const keys[] = {"exponent", "edge_taper"};
+    for (int i = 0; i < 2 && feed->pattern == EV_PATTERN_TABLE; i++) {
+        const ev_node *unused = ev_node_member(mapping, keys[i]);
+        if (unused)
+            ev_report_at(r->document, unused->key->start, unused->key->end, r->diagnostics,
+                         EV_SEVERITY_WARNING, taper_on_table, keys[i]);
+    }
     const ev_node *exponent = ev_node_member(mapping, "exponent");
     if (feed->pattern == EV_PATTERN_GAUSSIAN && exponent)
         ev_report_node(r->document, exponent->key, r->diagnostics, exponent_on_gaussian,
@@ -249,7 +263,7 @@ static void read_mapping(reader *r, const ev_node *mapping, const ev_section *se
     if (section->owner == EV_OWNER_SUB)
         check_two_of_three(r, mapping, section);
     if (section->owner == EV_OWNER_FEED)
-        check_gaussian(r, mapping, owner);
+        check_taper(r, mapping, owner);
 }
 
 void ev_default_entry_name(const ev_section *section, int index, char *name, size_t size)
@@ -336,6 +350,7 @@ static bool check_version(reader *r)
 static void check_sections(reader *r)
 {
     const ev_node *root = r->document->root;
+    assert(root->first != NULL); /* the version, at least */
     if (ev_node_member(root, "main") == NULL)
         ev_report_node(r->document, root->first->key, r->diagnostics, key_missing, "the scene",
                        "main", "main: {diameter: 1.2 m, f_over_d: 0.6}");
@@ -364,6 +379,7 @@ bool ev_design_read(const ev_document *document, ev_design *design, ev_diagnosti
 
 ev_node *ev_document_entry(const ev_document *document, const ev_section *section, int index)
 {
+    assert(document->root != NULL);
     if (is_top(section))
         return document->root;
     ev_node *node = ev_node_member(document->root, section->key);
@@ -390,10 +406,8 @@ const ev_node *ev_document_find_row(const ev_document *document, const ev_parame
     const ev_section *section = ev_section_of(row);
     int index = section->is_list ? find_entry(document, section, entry_name) : 0;
     const ev_node *mapping = index < 0 ? NULL : ev_document_entry(document, section, index);
-    if (mapping == NULL || is_top(section)) {
-        const ev_node *top = mapping ? find_given(mapping, row, NULL) : NULL;
-        return top ? top : document->root->first->key;
-    }
+    if (mapping == NULL)
+        return NULL;
     ev_field field = ev_field_of(row);
     const ev_node *node = ev_node_member(mapping, field.key);
     for (int i = 0; node && node->kind == EV_NODE_SEQUENCE && i < field.part_count; i++) {
@@ -402,8 +416,5 @@ const ev_node *ev_document_find_row(const ev_document *document, const ev_parame
     }
     if (node == NULL)
         node = find_given(mapping, row, NULL);
-    return node             ? node
-           : mapping->key   ? mapping->key
-           : mapping->first ? mapping->first->key
-                            : mapping;
+    return node ? node : find_handle(mapping);
 }

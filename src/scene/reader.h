@@ -9,7 +9,7 @@
 bool ev_design_read(const ev_document *document, ev_design *design, ev_diagnostics *diagnostics);
 
 /* The node of the document where a row stands: its own value, else its rival's in a choice, else
- * the mapping that would hold it, else the root. `entry_name` finds the entry of a list. */
+ * the mapping that would hold it, else NULL. `entry_name` finds the entry of a list. */
 const ev_node *ev_document_find_row(const ev_document *document, const ev_parameter *row,
                                     const char *entry_name);
 

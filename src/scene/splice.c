@@ -13,8 +13,11 @@ void ev_splice_add(ev_splice *splice, size_t start, size_t end, char *text)
         splice->edits =
             ev_reallocate(splice->edits, (size_t)splice->capacity * sizeof *splice->edits);
     }
-    splice->edits[splice->count] = (ev_edit){start, end, text, splice->count};
-    splice->count++;
+    ev_edit *edit = &splice->edits[splice->count];
+    edit->start = start;
+    edit->end = end;
+    edit->text = text;
+    edit->order = splice->count++;
 }
 
 static int compare_edits(const void *left, const void *right)

@@ -5,6 +5,7 @@
 #include "base/message.h"
 #include "base/text.h"
 
+#include <assert.h>
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
@@ -164,6 +165,7 @@ bool ev_value_set_text(void *owner, const ev_parameter *row, const char *text, e
 void ev_field_describe(const ev_field *field, char *text, size_t size)
 {
     const ev_parameter *row = field->word;
+    assert(row != NULL || field->part_count > 0);
     if (field->part_count > 0) {
         char examples[120] = "", words[160] = "";
         for (int i = 0; i < field->part_count; i++) {
@@ -235,6 +237,7 @@ static bool read_vector(void *owner, const ev_field *field, ev_spot spot,
 static bool read_list(void *owner, const ev_field *field, ev_spot spot, ev_diagnostics *diagnostics)
 {
     const ev_parameter *row = field->word;
+    assert(row != NULL && row->list_capacity <= EV_FREQUENCY_CAPACITY);
     double values[EV_FREQUENCY_CAPACITY];
     int count = ev_node_count(spot.node);
     if (count == 0) {

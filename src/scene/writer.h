@@ -7,7 +7,7 @@
 
 /* How a person spelled a value: used again for as long as the value is the design's. */
 typedef struct ev_spelling {
-    char address[2 * EV_NAME_CAPACITY];
+    char address[EV_ADDRESS_CAPACITY];
     double value;
     char text[48];
     struct ev_spelling *next;

@@ -4,6 +4,7 @@
 
 #include "scene/reader.h"
 
+#include <assert.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -22,6 +23,7 @@ static int find_step(const ev_document *document)
 static void insert_section(ev_writer *w, const ev_section *section)
 {
     const ev_document *document = w->splice.document;
+    assert(document->root != NULL);
     bool flow = document->root->flow;
     int step = find_step(document), entries = ev_section_entries(w->after, section);
     ev_buffer text = {0}, join = {0};
@@ -66,6 +68,7 @@ static void remove_section(ev_writer *w, const ev_node *node)
 /* Where the line of an entry's dash starts. */
 static size_t find_dash_line(const ev_document *document, const ev_node *list, const ev_node *entry)
 {
+    assert(entry != NULL); /* entries are counted by the design that the document gave */
     size_t column = list->start - ev_line_start(document, list->start);
     size_t line = ev_line_start(document, entry->start);
     while (line > list->key->start) {

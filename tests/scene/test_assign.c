@@ -138,6 +138,22 @@ static void refuses(void **state)
     ev_scene_destroy(scene);
 }
 
+static void a_gaussian_takes_no_exponent(void **state)
+{
+    (void)state;
+    ev_scene *scene = parse_good(offset_scene);
+    ev_design design = *ev_scene_design(scene);
+    assign_good(scene, &design, "feed.pattern=gaussian");
+    ev_diagnostics d;
+    ev_diagnostics_init(&d);
+    assert_false(ev_scene_assign(scene, &design, 0, "feed.exponent=3", &d));
+    assert_string_equal(d.items[0].id, "exponent_on_gaussian");
+    ev_diagnostics_clear(&d);
+    assign_good(scene, &design, "feed.edge_taper=9 dB");
+    assert_true(get_value(&design, "feed.edge_taper") == 9.0);
+    ev_scene_destroy(scene);
+}
+
 /* The table is read when the pattern asks for it. */
 static void refuses_a_pattern_without_its_file(void **state)
 {
@@ -173,6 +189,7 @@ int main(void)
         cmocka_unit_test(sets_texts_and_names),
         cmocka_unit_test(adds_a_subreflector),
         cmocka_unit_test(refuses),
+        cmocka_unit_test(a_gaussian_takes_no_exponent),
         cmocka_unit_test(refuses_a_pattern_without_its_file),
         cmocka_unit_test(selects_the_feed),
     };

@@ -28,7 +28,7 @@ typedef struct ev_sheet {
     int first_radial, around; /* samples to begin with; 0: a few. around: a power of two */
 } ev_sheet;
 
-enum { EV_MODE_ROWS = 12, EV_MODE_RADIAL_LIMIT = 320, EV_MODE_AROUND_LIMIT = 1024 };
+enum { EV_MODE_ROWS = 12, EV_MODE_RADIAL_LIMIT = 512, EV_MODE_AROUND_LIMIT = 1024 };
 
 /* j(r, phi) = sum over m and n of a_mn exp(jm phi) P_n(2t - 1), t = (r - hole) / (radius - hole).
  * Row m holds, for each degree, twelve numbers: x, y, z of +m, then of -m, real and imaginary.

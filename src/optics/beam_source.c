@@ -14,7 +14,7 @@
 enum { POINT_LEVELS = 10, POINT_PHASE = 32 };
 
 struct ev_beam_source {
-    ev_sheet sheet;
+    ev_sheet sheet, shadow_sheet;
     ev_modes modes;
     ev_polarization polarization;
     bool shadowed, edged;
@@ -72,6 +72,7 @@ ev_beam_source *ev_beam_source_make(const ev_beam_recipe *recipe)
     source->shadowed = shadows && (shadows->has_sub || shadows->body_count || shadows->strip_count);
     if (source->shadowed)
         source->shadows = *shadows;
+    source->shadow_sheet = recipe->shadow_sheet.currents ? recipe->shadow_sheet : recipe->sheet;
     return source;
 }
 
@@ -154,7 +155,8 @@ static ev_points *make_shadow(const ev_beam_source *source, double phase)
 {
     ev_shadow_points bare;
     ev_shadow_points_make(&source->shadows, phase, &bare);
-    ev_points *points = ev_points_create(&source->sheet, bare.x, bare.y, bare.weight, bare.count);
+    ev_points *points =
+        ev_points_create(&source->shadow_sheet, bare.x, bare.y, bare.weight, bare.count);
     ev_shadow_points_free(&bare);
     return points;
 }

@@ -11,11 +11,12 @@ typedef struct ev_beam_recipe {
     double efficiency;         /* power factor on all gains */
     double phase;              /* rad, of all fields */
     const ev_shadows *shadows; /* NULL: none; copied */
+    ev_sheet shadow_sheet;     /* whose currents the shadows take out; without any: the sheet's */
     /* Where the currents end within the rim: called for points (x, y, weight malloc'd) dense enough
      * for `phase` radians from centre to rim; NULL where they cannot. */
     void (*edge_points)(const void *context, double phase, double **x, double **y, double **weight,
                         int *count);
-    void *owned; /* freed with the source; what contexts point to */
+    void *owned; /* freed with the source; what later calls of contexts point to */
 } ev_beam_recipe;
 
 /* NULL when the sheet gave up; `owned` is then freed. */

@@ -81,7 +81,8 @@ static void print_source(const ev_diagnostic *item, FILE *stream)
 {
     const char *source = item->source;
     size_t length = strlen(source), count = ev_text_characters(source, length);
-    size_t column = item->column > 0 ? (size_t)item->column - 1 : 0;
+    bool on_line = item->column > 0 && (size_t)item->column <= count + 1;
+    size_t column = on_line ? (size_t)item->column - 1 : 0;
     size_t skip = column > SOURCE_SHOWN * 3 / 4 ? column - SOURCE_SHOWN / 2 : 0;
     size_t from = 0, to, seen = 0;
     for (to = 0; to < length && seen < skip + SOURCE_SHOWN; to++) {
@@ -94,7 +95,7 @@ static void print_source(const ev_diagnostic *item, FILE *stream)
         to++;
     fprintf(stream, "  %s%.*s%s\n", skip ? "..." : "", (int)(to - from), source + from,
             to < length ? "..." : "");
-    if (item->column <= 0 || column > count)
+    if (!on_line)
         return;
     fprintf(stream, "  %*s", (int)(column - skip) + (skip ? 3 : 0), "");
     for (int i = 0; i < item->width && i < SOURCE_SHOWN; i++)

@@ -52,7 +52,6 @@
     "a subreflector needs two of: magnification or eccentricity, interfocal, diameter; %s"
 #define EV_MESSAGE_version_missing "the scene does not say its format; start it with '%s'"
 #define EV_MESSAGE_version_wrong "format '%s' is not known; this program reads 'evenpath: 1'"
-
 #define EV_MESSAGE_exponent_on_gaussian                                                            \
     "a gaussian pattern has no exponent ('%s'); give its edge_taper, for example 'edge_taper: 11 " \
     "dB'"

@@ -23,11 +23,8 @@ void ev_splice_add(ev_splice *splice, size_t start, size_t end, char *text)
 static int compare_edits(const void *left, const void *right)
 {
     const ev_edit *a = left, *b = right;
-    bool a_inserts = a->end == a->start, b_inserts = b->end == b->start;
     if (a->start != b->start)
         return a->start < b->start ? -1 : 1;
-    if (a_inserts != b_inserts)
-        return a_inserts ? -1 : 1;
     return a->order - b->order;
 }
 

@@ -15,8 +15,7 @@ typedef struct ev_splice {
     int count, capacity;
 } ev_splice;
 
-/* Takes `text` over. Edits at one place keep the order in which they were made; an insertion comes
- * before a removal that starts there. */
+/* Takes `text` over. Edits at one place keep the order in which they were made. */
 void ev_splice_add(ev_splice *splice, size_t start, size_t end, char *text);
 
 /* The document with the edits made, malloc'd; frees them. */

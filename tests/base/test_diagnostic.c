@@ -93,6 +93,32 @@ static void shortens_long_lines(void **state)
     ev_diagnostics_clear(&d);
 }
 
+/* A place that the line does not have gets no caret. */
+static void keeps_the_caret_on_the_line(void **state)
+{
+    (void)state;
+    static const int columns[] = {0, -3, 7, 2000000000};
+    for (size_t i = 0; i < sizeof columns / sizeof columns[0]; i++) {
+        ev_diagnostics d;
+        ev_diagnostics_init(&d);
+        ev_place place = {"s.yaml", 1, columns[i], "caf\u00e9", 1};
+        ev_report(&d, EV_SEVERITY_ERROR, text_empty, &place, "t");
+        char text[512];
+        print_to_text(&d, text, sizeof text);
+        assert_non_null(strstr(text, "\n  caf\u00e9\n"));
+        assert_null(strchr(text, '^'));
+        ev_diagnostics_clear(&d);
+    }
+    ev_diagnostics d;
+    ev_diagnostics_init(&d);
+    ev_place place = {"s.yaml", 1, 6, "caf\u00e9", 1}; /* more bytes than characters */
+    ev_report(&d, EV_SEVERITY_ERROR, text_empty, &place, "t");
+    char text[512];
+    print_to_text(&d, text, sizeof text);
+    assert_null(strchr(text, '^'));
+    ev_diagnostics_clear(&d);
+}
+
 /* Bytes of a hostile file must not steer a terminal. */
 static void blanks_control_characters(void **state)
 {
@@ -112,7 +138,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(copies_and_counts),           cmocka_unit_test(stops_at_its_capacity),
         cmocka_unit_test(prints_place_line_and_caret), cmocka_unit_test(shortens_long_lines),
-        cmocka_unit_test(blanks_control_characters),
+        cmocka_unit_test(keeps_the_caret_on_the_line), cmocka_unit_test(blanks_control_characters),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -36,6 +36,8 @@ static void rows_are_whole(void **state)
             assert_null(row->words[(int)row->high + 1]);
         }
         for (int j = 0; j < i; j++) {
+            assert_false(row->owner == ev_parameter_at(j)->owner &&
+                         row->offset == ev_parameter_at(j)->offset);
             assert_string_not_equal(row->name, ev_parameter_at(j)->name);
             assert_string_not_equal(row->label, ev_parameter_at(j)->label);
         }

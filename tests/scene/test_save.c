@@ -163,6 +163,21 @@ static void refuses_what_would_not_read_back(void **state)
     ev_scene_destroy(scene);
 }
 
+/* Here the text with the new key is legal, and says two feeds. */
+static void refuses_what_would_read_back_as_another(void **state)
+{
+    (void)state;
+    static const char odd[] = "evenpath: 1\nfrequency: 12 GHz\n"
+                              "main: {diameter: 2 m, f_over_d: 0.4}\nfeeds: [name: a]\n";
+    write_file(path, odd);
+    ev_scene *scene = load_file();
+    ev_design design = *ev_scene_design(scene);
+    assign_good(scene, &design, "feed.roll=1 deg");
+    expect_refused(scene, &design, NULL, "save_unfaithful");
+    expect_file(path, odd);
+    ev_scene_destroy(scene);
+}
+
 static void a_new_scene_needs_a_name(void **state)
 {
     (void)state;
@@ -217,6 +232,7 @@ int main(void)
         IN_FOLDER(respects_the_work_of_others),
         IN_FOLDER(refuses_an_unsound_design),
         IN_FOLDER(refuses_what_would_not_read_back),
+        IN_FOLDER(refuses_what_would_read_back_as_another),
         IN_FOLDER(a_new_scene_needs_a_name),
         IN_FOLDER(a_table_must_be_found_from_the_new_place),
     };

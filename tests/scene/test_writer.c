@@ -12,6 +12,12 @@
 #define FLOW                                                                                       \
     "{\"evenpath\": 1, frequency: [12 GHz, 14 GHz], main: {diameter: 2 m, f_over_d: 0.4},\n"       \
     " feeds: [{name: a}, {name: b}]}\n"
+#define QUOTED                                                                                     \
+    "evenpath: 1\ntitle: \"old: one\"  # t\nfrequency: '12 GHz' # f\n"                             \
+    "main: {diameter: 2 m, f_over_d: 0.4}\nfeeds: [{name: a}]\n"
+#define LITERAL                                                                                    \
+    "evenpath: 1\ntitle: |\n  two\n  lines\nfrequency: # up, down\n- 12 GHz\n- 14 GHz # down\n"    \
+    "main: {diameter: 2 m, f_over_d: 0.4}\nfeeds: [{name: a}]\n"
 
 /* Expected texts are given as what is replaced by what in `before`. */
 typedef struct change {
@@ -65,6 +71,13 @@ static const struct {
      {"sub.shape=ellipsoid"},
      {{"0.66 m\n",
        "0.66 m\nsub:\n    shape: ellipsoid\n    magnification: 5\n    interfocal: 400 mm\n"}}},
+    /* quotes and lines of their own */
+    {QUOTED, {"title=new # two"}, {{"old: one", "new # two"}}},
+    {QUOTED, {"title=new"}, {{"old: one", "new"}}},
+    {QUOTED, {"frequency=13 GHz"}, {{"'12 GHz'", "13 GHz"}}},
+    {LITERAL, {"title=one"}, {{" |\n  two\n  lines", " one"}}},
+    {LITERAL, {"frequency=[12 GHz, 15 GHz]"}, {{"14 GHz", "15 GHz"}}},
+    {LITERAL, {"frequency=[1 GHz]"}, {{" # up, down\n- 12 GHz\n- 14 GHz", " 1 GHz"}}},
     /* flow style stays flow style */
     {FLOW, {"frequency=[12 GHz, 15 GHz]"}, {{"14 GHz", "15 GHz"}}},
     {FLOW, {"main.hole=50 mm"}, {{"f_over_d: 0.4", "f_over_d: 0.4, hole: 50 mm"}}},
@@ -145,6 +158,25 @@ static void inserts_and_removes_entries(void **state)
     ev_scene_destroy(scene);
 }
 
+/* Entries without a name are called by their place; one that moves up must be named. */
+static void names_what_was_called_by_its_place(void **state)
+{
+    (void)state;
+    ev_scene *scene = parse_good("evenpath: 1\nfrequency: 12 GHz\n"
+                                 "main: {diameter: 2 m, f_over_d: 0.4}\n"
+                                 "feeds: [{roll: 1 deg}, {roll: 2 deg}, {roll: 3 deg}]\n");
+    ev_design design = *ev_scene_design(scene);
+    design.feeds[0] = design.feeds[1];
+    design.feeds[1] = design.feeds[2];
+    design.feed_count = 2;
+    char *text = text_of(scene, &design);
+    assert_non_null(
+        strstr(text, "feeds: [{name: main2, roll: 2 deg}, {name: main3, roll: 3 deg}]"));
+    expect_same_after_reading(text, &design);
+    free(text);
+    ev_scene_destroy(scene);
+}
+
 static void removes_sections(void **state)
 {
     (void)state;
@@ -209,11 +241,13 @@ static void keeps_a_remembered_spelling(void **state)
     ev_design design = *ev_scene_design(scene);
     ev_scene_remember_spelling(scene, "feeds.main.defocus", 0.009525, "3/8 in");
     ev_scene_remember_spelling(scene, "feeds.main.shift.x", 0.0254, "1 in # not a value");
+    ev_scene_remember_spelling(scene, "feeds.main.shift.z", 0.5, "2 in"); /* of another value */
+    assign_good(scene, &design, "feed.shift.z=50.8 mm");
     assign_good(scene, &design, "feed.defocus=9.525 mm");
     assign_good(scene, &design, "feed.shift.x=25.4 mm");
     char *text = text_of(scene, &design);
     assert_non_null(strstr(text, "    defocus: 3/8 in\n"));
-    assert_non_null(strstr(text, "[25.4 mm, "));
+    assert_non_null(strstr(text, "[25.4 mm, 0 in, 50.8 mm]"));
     free(text);
     assign_good(scene, &design, "feed.defocus=10 mm");
     text = text_of(scene, &design);
@@ -328,6 +362,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(splices_only_what_changed),
         cmocka_unit_test(inserts_and_removes_entries),
+        cmocka_unit_test(names_what_was_called_by_its_place),
         cmocka_unit_test(removes_sections),
         cmocka_unit_test(keeps_line_ends),
         cmocka_unit_test(renames_of_three_in_place),

@@ -10,7 +10,7 @@ static const double pitch_limit = 89.0 * EV_PI / 180.0;
 ev_camera ev_default_camera(void)
 {
     return (ev_camera){
-        .yaw = -48.0 * EV_PI / 180.0, .pitch = 14.0 * EV_PI / 180.0, .distance = 5.0};
+        .yaw = -57.0 * EV_PI / 180.0, .pitch = 14.0 * EV_PI / 180.0, .distance = 5.0};
 }
 
 ev_eye ev_camera_eye(const ev_camera *camera, ev_rect place)

@@ -18,8 +18,9 @@ double ev_round_step(double value)
 
 double ev_round_place(double place, double step)
 {
-    double grain = 0.1 * step;
-    double rounded = grain * round(place / grain);
+    double grain = 0.1 * step, count = round(place / grain);
+    /* by division where that gives the number a person would write */
+    double rounded = grain < 1.0 ? count / round(1.0 / grain) : count * round(grain);
     return rounded == 0.0 ? 0.0 : rounded; /* no minus zero */
 }
 
@@ -54,8 +55,9 @@ static bool find_parameter(const ev_model *model, const char *address, ev_parame
     return ev_parameter_find(&model->design, model->feed, address, ref, NULL);
 }
 
+/* `label` NULL: the parameter's own. */
 static void add_parameter(const ev_model *model, ev_field_row *rows, int *count,
-                          const char *address)
+                          const char *address, const char *label)
 {
     ev_field_row row = {0};
     if (*count == EV_FIELD_CAPACITY || !find_parameter(model, address, &row.ref)) {
@@ -63,7 +65,7 @@ static void add_parameter(const ev_model *model, ev_field_row *rows, int *count,
     }
     row.has_parameter = true;
     snprintf(row.address, sizeof row.address, "%s", address);
-    snprintf(row.label, sizeof row.label, "%s", row.ref.parameter->label);
+    snprintf(row.label, sizeof row.label, "%s", label ? label : row.ref.parameter->label);
     row.step = choose_step(model, &row);
     rows[(*count)++] = row;
 }
@@ -108,7 +110,7 @@ static void add_strut_width(const ev_model *model, ev_field_row *rows, int *coun
     char address[96];
     if (model->design.strut_count > 0) {
         snprintf(address, sizeof address, "struts.%s.width", model->design.struts[0].name);
-        add_parameter(model, rows, count, address);
+        add_parameter(model, rows, count, address, NULL);
     }
 }
 
@@ -118,21 +120,21 @@ int ev_fields_list(const ev_model *model, ev_field_row rows[EV_FIELD_CAPACITY])
     if (model->part == EV_PART_SUB) {
         add_move(model, rows, &count, EV_PART_SUB, EV_AXIS_OUT);
         add_move(model, rows, &count, EV_PART_SUB, EV_AXIS_UP);
-        add_parameter(model, rows, &count, "sub.tilt.y");
+        add_parameter(model, rows, &count, "sub.tilt.y", "Subreflector tilt");
         add_move(model, rows, &count, EV_PART_FEED, EV_AXIS_OUT);
-        add_parameter(model, rows, &count, "frequency");
+        add_parameter(model, rows, &count, "frequency", NULL);
         add_strut_width(model, rows, &count);
-        add_parameter(model, rows, &count, "main.surface_rms");
+        add_parameter(model, rows, &count, "main.surface_rms", NULL);
         return count;
     }
     for (int axis = 0; axis < EV_AXIS_COUNT; ++axis) {
         add_move(model, rows, &count, EV_PART_FEED, (ev_part_axis)axis);
     }
-    add_parameter(model, rows, &count, "frequency");
+    add_parameter(model, rows, &count, "frequency", NULL);
     if (model->design.feeds[model->feed].pattern != EV_PATTERN_TABLE) {
-        add_parameter(model, rows, &count, "feed.edge_taper");
+        add_parameter(model, rows, &count, "feed.edge_taper", NULL);
     }
-    add_parameter(model, rows, &count, "main.surface_rms");
+    add_parameter(model, rows, &count, "main.surface_rms", NULL);
     return count;
 }
 
@@ -163,28 +165,18 @@ void ev_field_show(const ev_model *model, const ev_field_row *row, ev_field *fie
     }
 }
 
-/* Does the parameter alone say where the part sits along the axis? */
-static bool is_parameter_alone(const ev_model *model, const ev_field_row *row,
-                               const ev_design *from)
-{
-    if (!row->has_parameter) {
-        return false;
-    }
-    if (!row->is_move) {
-        return true;
-    }
-    double place = ev_part_place(from, &model->study->antenna, row->part, model->feed, row->axis);
-    return fabs(ev_parameter_get(from, row->ref) - place) < 1e-12;
-}
-
 ev_design ev_field_set(const ev_model *model, const ev_field_row *row, const ev_design *from,
                        double value)
 {
-    if (!is_parameter_alone(model, row, from)) {
-        return ev_model_moved(model, from, row->part, row->axis, value);
-    }
     ev_design set = *from;
-    ev_parameter_set(&set, row->ref, value);
+    if (row->is_move) {
+        set = ev_model_moved(model, from, row->part, row->axis, value);
+    }
+    /* a move that is a parameter gets the very number, without the rounding of directions */
+    if (!row->is_move ||
+        (row->has_parameter && fabs(ev_parameter_get(&set, row->ref) - value) < 1e-12)) {
+        ev_parameter_set(&set, row->ref, value);
+    }
     return set;
 }
 
@@ -270,7 +262,6 @@ bool ev_field_commit(ev_model *model, const ev_field_row *row, const char *text,
     if (!read_value(row, complete, &value, complaint, complaint_size)) {
         return false;
     }
-    bool alone = is_parameter_alone(model, row, &model->design);
     ev_design set = ev_field_set(model, row, &model->design, value);
     bool own_move = row->is_move && row->part == model->part && row->axis != EV_AXIS_ACROSS;
     if (!ev_model_try(model, &set, own_move)) {
@@ -278,7 +269,7 @@ bool ev_field_commit(ev_model *model, const ev_field_row *row, const char *text,
         model->message[0] = '\0';
         return false;
     }
-    if (alone) {
+    if (row->has_parameter && ev_parameter_get(&model->design, row->ref) == value) {
         ev_parameter_address(&model->design, row->ref, address, sizeof address);
         ev_worker_finish(model->worker, EV_JOB_SAVE);
         ev_scene_remember_spelling(model->scene, address, value, complete);

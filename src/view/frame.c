@@ -210,7 +210,9 @@ void ev_view_draw(ev_view *view)
                              .item_count = view->gallery.count,
                              .dark = view->dark,
                              .pointed = view->pointed,
-                             .scale = view->window.scale};
+                             .scale = view->window.scale,
+                             .threads = 2,
+                             .outlines = &view->space.strokes};
     stamp_page(view, &input);
     if (input.sheet) {
         stamp_numbers(view, &input);
@@ -222,10 +224,11 @@ void ev_view_draw(ev_view *view)
                                 .sheet = input.sheet,
                                 .camera = &view->camera,
                                 .scale = view->window.scale,
-                                .threads = ev_view_moving(view) ? 1 : 2};
+                                .threads = 2};
         place_parts(view, &input, parts);
         ev_space_draw(&view->space, &view->layers, &space, view->window.pixel_width,
                       view->window.pixel_height);
+        glFlush(); /* the driver's threads begin while the layers are drawn */
     }
     ev_layers_update(&view->layers, &input);
     ev_layers_show(&view->layers, &input);

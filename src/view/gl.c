@@ -65,19 +65,19 @@ static void make_texture(ev_texture *texture, int width, int height, bool smooth
     texture->height = height;
 }
 
-void ev_texture_upload(ev_texture *texture, int width, int height, int stride,
-                       const uint32_t *pixels, bool smooth)
+void ev_texture_upload(ev_texture *texture, const ev_pixels *pixels, bool smooth)
 {
-    if (texture->id && (texture->width != width || texture->height != height)) {
+    if (texture->id && (texture->width != pixels->width || texture->height != pixels->height)) {
         ev_texture_free(texture);
     }
     if (!texture->id) {
-        make_texture(texture, width, height, smooth);
+        make_texture(texture, pixels->width, pixels->height, smooth);
     }
     glBindTexture(GL_TEXTURE_2D, texture->id);
-    glPixelStorei(GL_UNPACK_ROW_LENGTH, stride);
-    glTexSubImage2D(GL_TEXTURE_2D, 0, 0, 0, width, height, GL_BGRA, GL_UNSIGNED_INT_8_8_8_8_REV,
-                    pixels);
+    glPixelStorei(GL_UNPACK_ROW_LENGTH, pixels->stride);
+    glTexSubImage2D(GL_TEXTURE_2D, 0, pixels->left, pixels->top, pixels->right - pixels->left,
+                    pixels->bottom - pixels->top, GL_BGRA, GL_UNSIGNED_INT_8_8_8_8_REV,
+                    pixels->data + (ptrdiff_t)pixels->top * pixels->stride + pixels->left);
     glPixelStorei(GL_UNPACK_ROW_LENGTH, 0);
 }
 
@@ -97,8 +97,9 @@ static void describe_vertices(void)
     } parts[] = {{3, offsetof(ev_vertex, position)},
                  {3, offsetof(ev_vertex, normal)},
                  {2, offsetof(ev_vertex, aperture)},
+                 {2, offsetof(ev_vertex, polar)},
                  {1, offsetof(ev_vertex, value)}};
-    for (GLuint i = 0; i < 4; ++i) {
+    for (GLuint i = 0; i < sizeof parts / sizeof parts[0]; ++i) {
         glEnableVertexAttribArray(i);
         glVertexAttribPointer(i, parts[i].size, GL_FLOAT, GL_FALSE, sizeof(ev_vertex),
                               (const void *)parts[i].offset);

@@ -16,9 +16,16 @@ typedef struct ev_texture {
     int width, height;
 } ev_texture;
 
-/* Premultiplied 0xAARRGGBB pixels, `stride` in pixels; the texture is made or resized as needed. */
-void ev_texture_upload(ev_texture *texture, int width, int height, int stride,
-                       const uint32_t *pixels, bool smooth);
+/* Pixels to upload: premultiplied 0xAARRGGBB, an image of width x height of which only the part
+ * from (left, top) to (right, bottom), both excluded, has changed. */
+typedef struct ev_pixels {
+    int width, height, stride; /* stride in pixels */
+    int left, top, right, bottom;
+    const uint32_t *data;
+} ev_pixels;
+
+/* The texture is made or resized as needed. */
+void ev_texture_upload(ev_texture *texture, const ev_pixels *pixels, bool smooth);
 void ev_texture_free(ev_texture *texture);
 
 /* A mesh in GL. Quads' indices are rebuilt only when the grid changes its size. */

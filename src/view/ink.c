@@ -99,6 +99,7 @@ void ev_ink_curve(const ev_ink *ink, ev_nib nib, const ev_vec3 *points, int coun
         at[2] = x;
         at[3] = y;
         sight[1] = nib.cast ? ev_ink_sight(ink, points[i], nib.of_front) : 1.0;
+        sight[1] *= nib.fade && i == count - 1 ? 0.0 : 1.0;
         if (have) {
             add_piece(ink, nib, at, sight, &along);
         }

@@ -27,6 +27,7 @@ typedef struct ev_nib {
     ev_colour colour;
     ev_stroke_style style;
     bool joined;
+    bool fade;     /* to nothing at its end */
     bool cast;     /* dims where something stands before it */
     bool of_front; /* part of the Front, which then does not hide it */
 } ev_nib;

@@ -39,17 +39,11 @@ static void ink_legs(const ev_ink *ink, ev_nib nib, const ev_ray *ray)
 /* A lost ray goes on from its last point and fades out. */
 static void ink_lost(const ev_ink *ink, ev_nib nib, const ev_ray *ray)
 {
-    enum { PIECES = 6 };
-    double reach = 0.9 * ink->sheet->antenna->radius;
+    double reach = 1.6 * ink->sheet->antenna->radius;
     ev_vec3 from = ray->points[ray->point_count - 1];
-    for (int i = 0; i < PIECES; ++i) {
-        ev_vec3 ends[2] = {ev_vec3_along(from, reach * i / PIECES, ray->leaving),
-                           ev_vec3_along(from, reach * (i + 1) / PIECES, ray->leaving)};
-        ev_nib piece = nib;
-        piece.alpha = nib.alpha * (1.0 - (i + 0.5) / PIECES);
-        piece.style = EV_STROKE_SOLID;
-        ev_ink_curve(ink, piece, ends, 2);
-    }
+    const ev_vec3 ends[2] = {from, ev_vec3_along(from, reach, ray->leaving)};
+    nib.fade = true;
+    ev_ink_curve(ink, nib, ends, 2);
 }
 
 static ev_nib ray_nib(const ev_ink *ink, const ev_ray *ray)

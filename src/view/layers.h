@@ -4,6 +4,7 @@
 
 #include "draw/draw.h"
 #include "view/gl.h"
+#include "view/raster.h"
 
 typedef enum {
     EV_LAYER_STAGE, /* section and Detail; or, over space, notes and Detail on nothing */
@@ -41,7 +42,7 @@ typedef struct ev_layer {
 typedef struct ev_layers {
     ev_layer items[EV_LAYER_COUNT];
     GLuint program, empty_array;
-    GLint place_at;
+    GLint place_at, part_at;
     ev_plot_map section, detail; /* of the Stage as last drawn */
     int redrawn;                 /* by the last update, for tests */
 } ev_layers;
@@ -54,9 +55,11 @@ typedef struct ev_layers_input {
     int item_count;
     bool dark;
     const char *pointed;
-    double scale;          /* device pixels per page pixel */
-    double part_x, part_y; /* space: where the part in hand is seen, page pixels */
-    const ev_box *parts;   /* space: handles of the parts */
+    double scale; /* device pixels per page pixel */
+    int threads;
+    const ev_strokes *outlines; /* space: device pixels from the Stage's corner */
+    double part_x, part_y;      /* space: where the part in hand is seen, page pixels */
+    const ev_box *parts;        /* space: handles of the parts */
     int part_count;
     uint64_t stamps[EV_STAMP_COUNT];
 } ev_layers_input;
@@ -76,5 +79,6 @@ const ev_box *ev_layers_find(const ev_layers *layers, bool gallery, const char *
 
 /* FNV-1a over bytes, to make stamps with; start from 0. */
 uint64_t ev_stamp(uint64_t stamp, const void *bytes, size_t size);
-/* One textured quad over a place of the page; used by the space view too. */
-void ev_layers_quad(const ev_layers *layers, const ev_page *page, ev_rect rect, GLuint texture);
+/* Part of a texture (in its pixels) over a place of the page; used by the space view too. */
+void ev_layers_quad(const ev_layers *layers, const ev_page *page, ev_rect rect,
+                    const ev_texture *texture, ev_rect part);

@@ -7,7 +7,7 @@
 #include <stdlib.h>
 
 enum {
-    MAIN_ROWS = 24,
+    MAIN_ROWS = 16,
     MAIN_COLUMNS = 96,
     SUB_ROWS = 10,
     SUB_COLUMNS = 64,
@@ -63,18 +63,21 @@ static void put(ev_mesh *mesh, int row, int column, ev_vec3 point, ev_vec3 norma
                                     .normal = {(float)normal.x, (float)normal.y, (float)normal.z}};
 }
 
-/* Aperture coordinates of a grid point, for the shadows and the grid drawn on a surface. */
-static void put_aperture(ev_mesh *mesh, int row, int column, double u, double v, double value)
-{
-    ev_vertex *vertex = &mesh->vertices[index_at(mesh, row, column)];
-    vertex->aperture[0] = (float)u;
-    vertex->aperture[1] = (float)v;
-    vertex->value = (float)value;
-}
-
 static double angle_of(int column, int columns)
 {
     return 2.0 * EV_PI * (column % columns) / columns;
+}
+
+/* Aperture coordinates of a grid point, for the shadows and the grid drawn on a surface. */
+static void put_aperture(ev_mesh *mesh, int row, int column, double r, double value)
+{
+    double t = angle_of(column, mesh->columns);
+    ev_vertex *vertex = &mesh->vertices[index_at(mesh, row, column)];
+    vertex->aperture[0] = (float)(r * cos(t));
+    vertex->aperture[1] = (float)(r * sin(t));
+    vertex->polar[0] = (float)r;
+    vertex->polar[1] = (float)column / (float)mesh->columns;
+    vertex->value = (float)value;
 }
 
 bool ev_mesh_main(ev_mesh *mesh, const ev_antenna *antenna)
@@ -91,7 +94,7 @@ bool ev_mesh_main(ev_mesh *mesh, const ev_antenna *antenna)
             ev_vec3 point =
                 ev_main_point(antenna, antenna->offset + antenna->radius * u, antenna->radius * v);
             put(mesh, row, column, point, ev_conic_normal(&antenna->main, point));
-            put_aperture(mesh, row, column, u, v, 0.0);
+            put_aperture(mesh, row, column, r, 0.0);
         }
     }
     return true;
@@ -108,7 +111,7 @@ bool ev_mesh_sub(ev_mesh *mesh, const ev_antenna *antenna)
             double t = angle_of(column, SUB_COLUMNS), r = (double)row / SUB_ROWS;
             ev_vec3 point = ev_sub_point(sub, r, t);
             put(mesh, row, column, point, ev_conic_normal(&sub->placed, point));
-            put_aperture(mesh, row, column, r * cos(t), r * sin(t), 0.0);
+            put_aperture(mesh, row, column, r, 0.0);
         }
     }
     return true;
@@ -150,7 +153,7 @@ double ev_front_stand(const ev_antenna *antenna)
     for (int i = 0; i < antenna->feed_count; ++i) {
         stand = fmax(stand, antenna->feeds[i].nominal.z);
     }
-    return stand + 0.2 * antenna->radius;
+    return stand + 0.35 * antenna->radius;
 }
 
 /* Bilinear among the cells that have a value; NaN when none has. */
@@ -199,7 +202,7 @@ bool ev_mesh_front(ev_mesh *mesh, const ev_sheet *sheet, double stand)
             error = isfinite(error) ? error : 0.0;
             double along = stand - sheet->front_exaggeration * error - ev_vec3_dot(s, foot);
             put(mesh, row, column, ev_vec3_along(foot, along, s), s);
-            put_aperture(mesh, row, column, u, v, error / range);
+            put_aperture(mesh, row, column, r, error / range);
         }
     }
     return true;
@@ -232,7 +235,10 @@ int ev_antenna_extent(const ev_antenna *antenna, ev_vec3 points[EV_EXTENT_CAPACI
     }
     points[count++] = ev_main_point(antenna, antenna->offset, 0.0);
     for (int i = 0; i < antenna->feed_count; ++i) {
-        points[count++] = antenna->feeds[i].nominal;
+        const ev_feed *feed = &antenna->feeds[i];
+        double horn = 3.0 * ev_outline_mouth(antenna, feed);
+        points[count++] = feed->nominal;
+        points[count++] = ev_vec3_along(feed->nominal, -horn, feed->nominal_axis);
     }
     return count;
 }

@@ -12,6 +12,7 @@ typedef struct ev_vertex {
     float position[3]; /* m from the mesh's origin */
     float normal[3];   /* unit */
     float aperture[2]; /* (x - centre, y) / radius of the main aperture */
+    float polar[2];    /* the same as distance from the centre and turns, 0 to 1 */
     float value;       /* Front: path error over the full-colour error, -1 early to 1 late */
 } ev_vertex;
 

@@ -208,6 +208,9 @@ bool ev_model_compute(ev_model *model, ev_stage_mode stage)
     if (first) {
         model->verdict = model->study->verdict;
         model->verdict_serial = model->serial;
+        if (model->verdict.id == EV_VERDICT_SUB_MISPLACED) {
+            ev_model_select(model, EV_PART_SUB, model->feed);
+        }
         model->worded_dbi = model->study->budget.feeds[model->feed].gain_on_axis_dbi;
     }
     return true;

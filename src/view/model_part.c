@@ -7,17 +7,51 @@
 
 static const double reword_db = 0.1; /* a change of gain that makes the words wrong */
 
-double ev_model_place(const ev_model *model, ev_part part, ev_part_axis axis)
+/* How far a part stands from nominal along its own axes, as components of the design's own numbers
+ * so that what was typed comes back exactly. */
+static void find_places(const ev_model *model, const ev_design *design, ev_part part,
+                        double place[EV_AXIS_COUNT])
 {
-    return ev_part_place(&model->design, &model->study->antenna, part, model->feed, axis);
+    const ev_antenna *antenna = &model->study->antenna;
+    const ev_feed_design *feed = &design->feeds[model->feed];
+    ev_vec3 shift = part == EV_PART_SUB ? design->sub.shift : feed->shift;
+    for (int axis = 0; axis < EV_AXIS_COUNT; ++axis) {
+        place[axis] = ev_vec3_dot(
+            shift, ev_part_axis_direction(antenna, part, model->feed, (ev_part_axis)axis));
+    }
+    if (part == EV_PART_FEED) {
+        place[EV_AXIS_OUT] += feed->defocus;
+    }
 }
 
+double ev_model_place(const ev_model *model, ev_part part, ev_part_axis axis)
+{
+    double place[EV_AXIS_COUNT];
+    find_places(model, &model->design, part, place);
+    return place[axis];
+}
+
+/* A feed's way out is its defocus, and its shift is square to it: the number on the field is then
+ * the number in the file. */
 ev_design ev_model_moved(const ev_model *model, const ev_design *from, ev_part part,
                          ev_part_axis axis, double place)
 {
     ev_design moved = *from;
-    double by = place - ev_part_place(from, &model->study->antenna, part, model->feed, axis);
-    ev_part_move(&moved, &model->study->antenna, part, model->feed, axis, by);
+    double places[EV_AXIS_COUNT];
+    find_places(model, from, part, places);
+    places[axis] = place;
+    ev_vec3 shift = {0.0, 0.0, 0.0};
+    for (int i = part == EV_PART_FEED ? EV_AXIS_UP : EV_AXIS_OUT; i < EV_AXIS_COUNT; ++i) {
+        ev_vec3 way =
+            ev_part_axis_direction(&model->study->antenna, part, model->feed, (ev_part_axis)i);
+        shift = ev_vec3_along(shift, places[i], way);
+    }
+    if (part == EV_PART_SUB) {
+        moved.sub.shift = shift;
+    } else {
+        moved.feeds[model->feed].shift = shift;
+        moved.feeds[model->feed].defocus = places[EV_AXIS_OUT];
+    }
     return moved;
 }
 

@@ -15,7 +15,7 @@ enum { BAND = 24 };
 
 static const float dash_on = 7.0F, dash_period = 11.0F;
 static const float dot_on = 2.0F, dot_period = 4.5F;
-static const float bar_length = 10.0F, bar_width = 1.6F;
+static const float bend_slack = 0.1F, thin_width = 1.5F, least_alpha = 1.0F / 512.0F;
 
 /* A stroke clipped to the image, with what its inner loop needs. */
 typedef struct trace {
@@ -25,7 +25,9 @@ typedef struct trace {
     uint32_t colour;
     uint8_t style;
     bool joined_start, joined_end;
+    bool thin;       /* and free at both ends */
     int top, bottom; /* rows it may touch, bottom excluded */
+    int left, right; /* and columns */
 } trace;
 
 bool ev_raster_resize(ev_raster *raster, int width, int height)
@@ -54,10 +56,39 @@ void ev_raster_free(ev_raster *raster)
 
 void ev_raster_clear(ev_raster *raster)
 {
-    if (raster->pixels) {
-        memset(raster->pixels, 0,
-               (size_t)raster->width * (size_t)raster->height * sizeof *raster->pixels);
+    for (int y = raster->top; y < raster->bottom; ++y) {
+        memset(&raster->pixels[(size_t)y * (size_t)raster->width + (size_t)raster->left], 0,
+               (size_t)(raster->right - raster->left) * sizeof *raster->pixels);
     }
+    raster->left = raster->top = raster->right = raster->bottom = 0;
+}
+
+/* The library's fminf and floorf cost a call each; in the inner loops these are a few instructions,
+ * and no NaN gets that far. */
+static inline float lesser(float a, float b)
+{
+    return a < b ? a : b;
+}
+
+static inline float greater(float a, float b)
+{
+    return a > b ? a : b;
+}
+
+static int least(int a, int b)
+{
+    return a < b ? a : b;
+}
+
+static int most(int a, int b)
+{
+    return a > b ? a : b;
+}
+
+/* Whole part within [low, high], both >= 0. */
+static inline int clamp_int(float value, int low, int high)
+{
+    return value < (float)low ? low : value > (float)high ? high : (int)value;
 }
 
 /* Liang and Barsky's bounds for one edge: keeps [*from, *to] where p t <= q. */
@@ -111,20 +142,25 @@ static bool prepare(const ev_raster *raster, const ev_stroke *s, trace *t)
                  .colour = s->colour,
                  .style = s->style,
                  .joined_start = s->joined_start,
-                 .joined_end = s->joined_end};
+                 .joined_end = s->joined_end,
+                 .thin = s->width <= thin_width && !s->joined_start && !s->joined_end};
     float y_end = t->y0 + t->dy * t->length;
     t->top = (int)floorf(fminf(t->y0, y_end) - t->half) - 1;
     t->bottom = (int)ceilf(fmaxf(t->y0, y_end) + t->half) + 1;
+    float x_end = t->x0 + t->dx * t->length;
+    t->left = (int)floorf(fminf(t->x0, x_end) - t->half) - 1;
+    t->right = (int)ceilf(fmaxf(t->x0, x_end) + t->half) + 1;
     return true;
 }
 
-/* Coverage along the stroke: butt ends smoothed over a pixel, or a hard limit where joined. */
+/* Coverage along the stroke: butt ends smoothed over a pixel, or a hard limit where joined. The
+ * limit leaves a little for the wedge that opens on the outside of a bend. */
 static inline float cover_ends(const trace *t, float along)
 {
-    float in = t->joined_start ? (along >= 0.0F ? 1.0F : 0.0F) : along + 0.5F;
-    float out = t->joined_end ? (along < t->length ? 1.0F : 0.0F) : t->length - along + 0.5F;
-    float cover = fminf(in, out);
-    return fminf(fmaxf(cover, 0.0F), 1.0F);
+    float in = t->joined_start ? (along >= -bend_slack ? 1.0F : 0.0F) : along + 0.5F;
+    float out =
+        t->joined_end ? (along < t->length + bend_slack ? 1.0F : 0.0F) : t->length - along + 0.5F;
+    return lesser(greater(lesser(in, out), 0.0F), 1.0F);
 }
 
 static inline float cover_pattern(const trace *t, float along)
@@ -132,10 +168,10 @@ static inline float cover_pattern(const trace *t, float along)
     float on = t->style == EV_STROKE_DASHES ? dash_on : dot_on;
     float period = t->style == EV_STROKE_DASHES ? dash_period : dot_period;
     float s = t->start + along;
-    float phase = s - period * floorf(s / period);
+    float phase = s - period * (float)(int)(s / period); /* s >= 0 but for the first half pixel */
     /* the dash is [0, on]; distance to its nearer end, positive inside */
-    float inside = phase <= 0.5F * (on + period) ? fminf(phase, on - phase) : phase - period;
-    return fminf(fmaxf(inside + 0.5F, 0.0F), 1.0F);
+    float inside = phase <= 0.5F * (on + period) ? lesser(phase, on - phase) : phase - period;
+    return lesser(greater(inside + 0.5F, 0.0F), 1.0F);
 }
 
 static inline void blend(uint32_t *pixel, uint32_t colour, float alpha)
@@ -152,7 +188,7 @@ static inline void shade(const trace *t, uint32_t *pixel, float px, float py)
 {
     float rx = px - t->x0, ry = py - t->y0;
     float along = rx * t->dx + ry * t->dy;
-    float cover = fminf(t->half - fabsf(rx * t->dy - ry * t->dx), t->cap);
+    float cover = lesser(t->half - fabsf(rx * t->dy - ry * t->dx), t->cap);
     if (cover <= 0.0F) {
         return;
     }
@@ -161,55 +197,80 @@ static inline void shade(const trace *t, uint32_t *pixel, float px, float py)
         cover *= cover_pattern(t, along);
     }
     float alpha = cover * (t->alpha + t->alpha_rate * along);
-    if (alpha > 1.0F / 512.0F) {
-        blend(pixel, t->colour, fminf(alpha, 1.0F));
+    if (alpha > least_alpha) {
+        blend(pixel, t->colour, lesser(alpha, 1.0F));
     }
 }
 
-static inline int clamp_int(float value, int low, int high)
+/* Opacity along a thin stroke, where what happens across it can be left out. */
+static inline float strength_at(const trace *t, float along)
 {
-    return value < (float)low ? low : value > (float)high ? high : (int)value;
+    float strength = t->alpha + t->alpha_rate * along;
+    if (along < 0.5F || along > t->length - 0.5F) {
+        strength *= cover_ends(t, along);
+    }
+    return t->style == EV_STROKE_SOLID ? strength : strength * cover_pattern(t, along);
 }
 
-/* Mostly level strokes: column by column. */
-static void draw_level(ev_raster *raster, const trace *t, int top, int bottom)
+/* A stroke seen along its main direction: for level ones that is x, for upright ones y. `lane` is a
+ * column or row, `cross` the pixels in it. */
+typedef struct lanes {
+    bool level, thin;
+    float slope;  /* cross per lane */
+    float reach;  /* half its thickness in a lane */
+    float cosine; /* distance from the middle line per pixel of a lane */
+} lanes;
+
+static void draw_lane(ev_raster *raster, const trace *t, const lanes *l, int lane, int low,
+                      int high)
 {
-    float slope = t->dy / t->dx, reach = t->half / fabsf(t->dx);
-    float end = t->x0 + t->dx * t->length;
-    float left = fminf(t->x0, end) - t->half, right = fmaxf(t->x0, end) + t->half;
-    if (fabsf(slope) > 1e-6F) { /* only the columns where it crosses these rows */
-        float a = t->x0 + ((float)top - reach - t->y0) / slope;
-        float b = t->x0 + ((float)bottom + reach - t->y0) / slope;
-        left = fmaxf(left, fminf(a, b) - 1.0F);
-        right = fminf(right, fmaxf(a, b) + 1.0F);
+    float at = (float)lane + 0.5F, from_start = at - (l->level ? t->x0 : t->y0);
+    float middle = (l->level ? t->y0 : t->x0) + l->slope * from_start;
+    /* the pixels whose centres lie within */
+    int from = clamp_int(middle - l->reach + 0.5F, low, high);
+    int to = clamp_int(middle + l->reach + 0.5F, low, high);
+    size_t across = (size_t)raster->width;
+    size_t step = l->level ? across : 1;
+    uint32_t *pixel =
+        raster->pixels + (l->level ? (size_t)lane : (size_t)lane * across) + (size_t)from * step;
+    if (!l->thin) {
+        for (int i = from; i < to; ++i, pixel += step) {
+            float cross = (float)i + 0.5F;
+            shade(t, pixel, l->level ? at : cross, l->level ? cross : at);
+        }
+        return;
     }
-    int first = clamp_int(floorf(left), 0, raster->width);
-    int last = clamp_int(ceilf(right), 0, raster->width);
-    for (int x = first; x < last; ++x) {
-        float px = (float)x + 0.5F;
-        float middle = t->y0 + slope * (px - t->x0);
-        int from = clamp_int(floorf(middle - reach), top, bottom);
-        int to = clamp_int(ceilf(middle + reach), top, bottom);
-        for (int y = from; y < to; ++y) {
-            shade(t, &raster->pixels[(size_t)y * (size_t)raster->width + (size_t)x], px,
-                  (float)y + 0.5F);
+    float strength = strength_at(t, from_start / (l->level ? t->dx : t->dy));
+    for (int i = from; i < to; ++i, pixel += step) {
+        float away = fabsf((float)i + 0.5F - middle) * l->cosine;
+        float alpha = lesser(t->half - away, t->cap) * strength;
+        if (alpha > least_alpha) {
+            blend(pixel, t->colour, lesser(alpha, 1.0F));
         }
     }
 }
 
-/* Mostly upright strokes: row by row. */
-static void draw_upright(ev_raster *raster, const trace *t, int top, int bottom)
+/* The lanes a stroke touches while it runs through the rows from top to bottom. */
+static void draw_rows(ev_raster *raster, const trace *t, int top, int bottom)
 {
-    float slope = t->dx / t->dy, reach = t->half / fabsf(t->dy);
-    for (int y = top; y < bottom; ++y) {
-        float py = (float)y + 0.5F;
-        float middle = t->x0 + slope * (py - t->y0);
-        int from = clamp_int(floorf(middle - reach), 0, raster->width);
-        int to = clamp_int(ceilf(middle + reach), 0, raster->width);
-        uint32_t *row = &raster->pixels[(size_t)y * (size_t)raster->width];
-        for (int x = from; x < to; ++x) {
-            shade(t, &row[x], (float)x + 0.5F, py);
-        }
+    bool level = fabsf(t->dx) >= fabsf(t->dy);
+    float along = level ? t->dx : t->dy, cross = level ? t->dy : t->dx;
+    lanes l = {.level = level,
+               .thin = t->thin,
+               .slope = cross / along,
+               .reach = t->half / fabsf(along),
+               .cosine = fabsf(along)};
+    int first = level ? t->left : top, last = level ? t->right : bottom;
+    if (level && fabsf(l.slope) > 1e-6F) {
+        float a = t->x0 + ((float)top - l.reach - t->y0) / l.slope;
+        float b = t->x0 + ((float)bottom + l.reach - t->y0) / l.slope;
+        first = clamp_int(lesser(a, b) - 1.0F, most(first, 0), most(last, 0));
+        last = clamp_int(greater(a, b) + 2.0F, most(first, 0), most(last, 0));
+    }
+    first = most(first, 0);
+    last = least(last, level ? raster->width : raster->height);
+    for (int lane = first; lane < last; ++lane) {
+        draw_lane(raster, t, &l, lane, level ? top : 0, level ? bottom : raster->width);
     }
 }
 
@@ -219,17 +280,25 @@ static void draw_band(ev_raster *raster, const trace *traces, int count, int ban
     int bottom = top + BAND < raster->height ? top + BAND : raster->height;
     for (int i = 0; i < count; ++i) {
         const trace *t = &traces[i];
-        int from = t->top > top ? t->top : top;
-        int to = t->bottom < bottom ? t->bottom : bottom;
-        if (from >= to) {
-            continue;
-        }
-        if (fabsf(t->dx) >= fabsf(t->dy)) {
-            draw_level(raster, t, from, to);
-        } else {
-            draw_upright(raster, t, from, to);
+        int from = most(t->top, top), to = least(t->bottom, bottom);
+        if (from < to) {
+            draw_rows(raster, t, from, to);
         }
     }
+}
+
+static void widen_bounds(ev_raster *raster, const trace *t)
+{
+    int left = most(t->left, 0), top = most(t->top, 0);
+    int right = least(t->right, raster->width), bottom = least(t->bottom, raster->height);
+    bool empty = raster->right == 0;
+    if (left >= right || top >= bottom) {
+        return;
+    }
+    raster->left = empty ? left : least(raster->left, left);
+    raster->top = empty ? top : least(raster->top, top);
+    raster->right = most(raster->right, right);
+    raster->bottom = most(raster->bottom, bottom);
 }
 
 void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int threads)
@@ -241,7 +310,10 @@ void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int 
     }
     int kept = 0;
     for (int i = 0; i < count; ++i) {
-        kept += prepare(raster, &strokes[i], &traces[kept]) ? 1 : 0;
+        if (prepare(raster, &strokes[i], &traces[kept])) {
+            widen_bounds(raster, &traces[kept]);
+            ++kept;
+        }
     }
     int bands = (raster->height + BAND - 1) / BAND;
 #pragma omp parallel for schedule(dynamic) num_threads(threads < 1 ? 1 : threads)
@@ -249,45 +321,4 @@ void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int 
         draw_band(raster, traces, kept, band);
     }
     free(traces);
-}
-
-bool ev_strokes_add(ev_strokes *strokes, ev_stroke stroke)
-{
-    if (strokes->count == strokes->capacity) {
-        int capacity = strokes->capacity ? 2 * strokes->capacity : 1024;
-        ev_stroke *items = realloc(strokes->items, (size_t)capacity * sizeof *items);
-        if (!items) {
-            return false;
-        }
-        strokes->items = items;
-        strokes->capacity = capacity;
-    }
-    strokes->items[strokes->count++] = stroke;
-    return true;
-}
-
-bool ev_strokes_add_bar(ev_strokes *strokes, ev_stroke stroke)
-{
-    float dx = stroke.x1 - stroke.x0, dy = stroke.y1 - stroke.y0;
-    float length = hypotf(dx, dy);
-    if (!(length > 0.0F)) {
-        return true;
-    }
-    float nx = -0.5F * bar_length * dy / length, ny = 0.5F * bar_length * dx / length;
-    ev_stroke bar = stroke;
-    bar.x0 = stroke.x1 - nx;
-    bar.y0 = stroke.y1 - ny;
-    bar.x1 = stroke.x1 + nx;
-    bar.y1 = stroke.y1 + ny;
-    bar.width = bar_width;
-    bar.alpha0 = bar.alpha1 = stroke.alpha1;
-    bar.style = EV_STROKE_SOLID;
-    bar.joined_start = bar.joined_end = false;
-    return ev_strokes_add(strokes, bar);
-}
-
-void ev_strokes_free(ev_strokes *strokes)
-{
-    free(strokes->items);
-    *strokes = (ev_strokes){0};
 }

@@ -26,12 +26,14 @@ typedef struct ev_stroke {
 
 typedef struct ev_raster {
     int width, height;
-    uint32_t *pixels; /* premultiplied 0xAARRGGBB, rows of `width` */
+    uint32_t *pixels;             /* premultiplied 0xAARRGGBB, rows of `width` */
+    int left, top, right, bottom; /* what was drawn on lies within; right and bottom excluded */
 } ev_raster;
 
 /* Zero-sized at first; false when there is no memory, and the raster is then empty. */
 bool ev_raster_resize(ev_raster *raster, int width, int height);
 void ev_raster_free(ev_raster *raster);
+/* Clears what was drawn on. */
 void ev_raster_clear(ev_raster *raster);
 
 /* Blends `count` strokes over what is there. Strokes with ends that are not finite are left out.

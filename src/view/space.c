@@ -1,7 +1,7 @@
 /* One picture of the antenna in space, back to front:
  *   what is furthest (dish from the sky side, Front from behind), the rays, the solid parts with
- *   depth among themselves, what is nearest, and last the outlines, whose hidden pieces the ink has
- *   already dimmed. */
+ *   depth among themselves, what is nearest. The outlines, whose hidden pieces the ink has dimmed,
+ *   go into the Stage's layer, under its words. */
 #include "view/space.h"
 
 #include "shaders.h"
@@ -29,7 +29,6 @@ void ev_space_end(ev_space *space)
     ev_raster_free(&space->raster);
     ev_strokes_free(&space->strokes);
     ev_texture_free(&space->rays);
-    ev_texture_free(&space->outlines);
     ev_texture_free(&space->shadows);
     glDeleteProgram(space->mirror);
     glDeleteProgram(space->front);
@@ -84,8 +83,13 @@ static void update_shadows(ev_space *space, const ev_antenna *antenna)
     }
     cairo_destroy(cairo);
     cairo_surface_flush(surface);
-    ev_texture_upload(&space->shadows, SIDE, SIDE, cairo_image_surface_get_stride(surface) / 4,
-                      (const uint32_t *)(void *)cairo_image_surface_get_data(surface), true);
+    ev_pixels pixels = {.width = SIDE,
+                        .height = SIDE,
+                        .stride = cairo_image_surface_get_stride(surface) / 4,
+                        .right = SIDE,
+                        .bottom = SIDE,
+                        .data = (const uint32_t *)(void *)cairo_image_surface_get_data(surface)};
+    ev_texture_upload(&space->shadows, &pixels, true);
     cairo_surface_destroy(surface);
     space->shadow_stamp = stamp;
 }
@@ -138,6 +142,7 @@ static void place_mesh(GLuint program, const ev_ink *ink, const ev_mesh *mesh)
     ev_eye_matrix(&ink->eye, ink->place, mesh->origin, fmax(away - reach, 0.02 * away),
                   away + reach, clip);
     glUniformMatrix4fv(glGetUniformLocation(program, "clip"), 1, GL_FALSE, clip);
+    glUniform2f(glGetUniformLocation(program, "polar_lines"), 6.0F, 24.0F);
     glUniform3f(glGetUniformLocation(program, "eye"), (float)eye.x, (float)eye.y, (float)eye.z);
 }
 
@@ -196,22 +201,28 @@ static void draw_solids(const ev_space *space, const ev_ink *ink)
     glDisable(GL_DEPTH_TEST);
 }
 
-static void show_strokes(ev_space *space, const ev_layers *layers, const ev_space_input *input,
-                         ev_texture *texture)
+/* Rasterises the rays and lays them over what is drawn. */
+static void show_rays(ev_space *space, const ev_layers *layers, const ev_space_input *input)
 {
     ev_rect stage = input->page->stage;
+    ev_raster *raster = &space->raster;
     int width = (int)ceil(stage.width * input->scale);
     int height = (int)ceil(stage.height * input->scale);
-    if (!ev_raster_resize(&space->raster, width, height)) {
+    ev_raster_clear(raster);
+    if (!ev_raster_resize(raster, width, height)) {
         return;
     }
-    ev_raster_clear(&space->raster);
-    ev_raster_draw(&space->raster, space->strokes.items, space->strokes.count, input->threads);
-    ev_texture_upload(texture, width, height, width, space->raster.pixels, false);
-    ev_page local = {.width = stage.width, .height = stage.height};
-    ev_layers_quad(layers, &local, (ev_rect){0.0, 0.0, width / input->scale, height / input->scale},
-                   texture->id);
+    ev_raster_draw(raster, space->strokes.items, space->strokes.count, input->threads);
     space->strokes.count = 0;
+    if (raster->right > raster->left) {
+        ev_pixels pixels = {width,       height,        width,          raster->left,
+                            raster->top, raster->right, raster->bottom, raster->pixels};
+        ev_rect part = {raster->left, raster->top, raster->right - raster->left,
+                        raster->bottom - raster->top};
+        ev_page local = {.width = width, .height = height};
+        ev_texture_upload(&space->rays, &pixels, false);
+        ev_layers_quad(layers, &local, part, &space->rays, part);
+    }
 }
 
 static void ink_front(ev_space *space, const ev_ink *ink)
@@ -276,7 +287,7 @@ void ev_space_draw(ev_space *space, const ev_layers *layers, const ev_space_inpu
         draw_front(space, &ink);
     }
     ev_ink_rays(&ink);
-    show_strokes(space, layers, input, &space->rays);
+    show_rays(space, layers, input);
     draw_solids(space, &ink);
     if (from_sky) {
         draw_front(space, &ink);
@@ -284,6 +295,5 @@ void ev_space_draw(ev_space *space, const ev_layers *layers, const ev_space_inpu
         draw_dish(space, &ink, true);
     }
     ink_outlines(space, &ink);
-    show_strokes(space, layers, input, &space->outlines);
     glViewport(0, 0, pixel_width, pixel_height);
 }

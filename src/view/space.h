@@ -12,8 +12,8 @@ typedef struct ev_space {
     ev_mesh meshes[3 + EV_FEED_CAPACITY]; /* dish, subreflector, Front, horns */
     ev_grid grids[3 + EV_FEED_CAPACITY];
     ev_raster raster;
-    ev_strokes strokes;
-    ev_texture rays, outlines, shadows;
+    ev_strokes strokes; /* after drawing: the outlines, for the Stage's layer */
+    ev_texture rays, shadows;
     uint64_t shadow_stamp;
 } ev_space;
 

@@ -6,6 +6,7 @@
 #include "view/replay.h"
 #include "view/state.h"
 
+#include <omp.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -182,6 +183,9 @@ int ev_view_run(const ev_view_options *options, ev_diagnostics *diagnostics)
     }
     view->options = options;
     view->diagnostics = diagnostics;
+    /* Two cores: one for the frame, one for the worker and the GL driver's own threads. A team of
+     * threads that waits for a core it cannot have costs more than it wins. */
+    omp_set_num_threads(1);
     run(view);
     int code = view->exit_code;
     end(view);

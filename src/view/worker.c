@@ -1,6 +1,7 @@
 /* The worker's thread and its slots. */
 #include "view/worker.h"
 
+#include <omp.h>
 #include <stdio.h>
 #include <stdlib.h>
 
@@ -110,6 +111,8 @@ static void run_slot(ev_worker *worker, int kind)
 static int run_worker(void *data)
 {
     ev_worker *worker = data;
+    omp_set_num_threads(1); /* the other core belongs to the frame */
+    SDL_SetThreadPriority(SDL_THREAD_PRIORITY_LOW);
     SDL_LockMutex(worker->mutex);
     for (;;) {
         int kind = next_kind(worker);

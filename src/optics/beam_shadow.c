@@ -64,8 +64,8 @@ static void add_obstacle(const ev_shadows *shadows, int index, double phase,
     bool strip = ev_shadow_is_strip(shadows, index);
     double along = phase * fmin(1.0, extent[0] / shadows->radius);
     double across = phase * fmin(1.0, extent[1] / shadows->radius);
-    int radial = (int)(8.0 + 0.3 * along);
-    int lines = (int)(strip ? 5.0 + 0.3 * across : 24.0 + 1.15 * across);
+    int radial = (int)(10.0 + 0.3 * along);
+    int lines = (int)(strip ? 5.0 + 0.3 * across : 28.0 + 1.2 * across);
     obstacle work = {.shadows = shadows, .index = index, .panels = (radial + PANEL - 1) / PANEL};
     ev_region region = {
         .slice = slice, .context = &work, .seeds = seeds, .rows = strip, .shared = true};

@@ -10,7 +10,19 @@ typedef struct page {
     ev_antenna antenna;
     ev_budget budget;
     ev_verdict verdict;
+    ev_beam beams[EV_FEED_CAPACITY];
 } page;
+
+/* The radiated beams go into what programs read; for people there is `evenpath beam`. */
+static void fill_page(const ev_options *options, const ev_loaded *loaded, double frequency,
+                      page *at)
+{
+    ev_antenna_build(&loaded->design, frequency, &at->antenna);
+    ev_budget_compute(&at->antenna, &at->budget);
+    ev_verdict_find(&loaded->design, frequency, 0, &at->verdict);
+    for (int i = 0; (options->json || options->csv) && i < at->budget.feed_count; i++)
+        ev_beam_compute(&at->antenna, i, &at->budget.feeds[i], EV_BEAM_EXACT, &at->beams[i]);
+}
 
 static void print(const ev_options *options, const ev_report *reports, int count)
 {
@@ -40,15 +52,13 @@ int ev_command_budget(const ev_options *options)
         abort();
     for (int i = 0; i < count; i++) {
         page *at = &pages[i];
-        double frequency = loaded.design.frequencies[i];
-        ev_antenna_build(&loaded.design, frequency, &at->antenna);
-        ev_budget_compute(&at->antenna, &at->budget);
-        ev_verdict_find(&loaded.design, frequency, 0, &at->verdict);
+        fill_page(options, &loaded, loaded.design.frequencies[i], at);
         reports[i] = (ev_report){.design = &loaded.design,
                                  .antenna = &at->antenna,
                                  .budget = &at->budget,
                                  .verdict = &at->verdict,
-                                 .warnings = &loaded.cautions};
+                                 .warnings = &loaded.cautions,
+                                 .beams = options->json || options->csv ? at->beams : NULL};
     }
     print(options, reports, count);
     free(pages);

@@ -13,6 +13,8 @@ static const ev_command commands[] = {
      "--size --dark --replay", 0, 1, ev_command_window},
     {"budget", "SCENE", "verdict, watts, ledger of losses, path error, noise, cautions",
      "--json --csv --all-frequencies", 1, 1, ev_command_budget},
+    {"beam", "SCENE", "gain, widths, sidelobes, cross-polarization; cuts, maps, limits",
+     "--feed --cut --map --span --grid --limits --second --json --csv", 1, 1, ev_command_beam},
     {"rays", "SCENE", "a fan of rays as CSV: hit points, lengths, fate, power",
      "--feed --rays --section", 1, 1, ev_command_rays},
     {"aperture", "SCENE", "the aperture as CSV: path error, lighting, shadow on a grid",

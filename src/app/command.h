@@ -17,10 +17,12 @@ typedef struct ev_options {
     int operand_count;
     const char *sets[EV_SET_CAPACITY];
     int set_count;
-    bool json, csv, all_frequencies, dark, section;
+    bool json, csv, all_frequencies, dark, section, map, second, has_cut;
     int rays, grid;       /* 0: not given */
     double width, height; /* of --size; 0: not given */
     double scale;
+    double cut, span;   /* degrees; cut holds when has_cut, span 0: not given */
+    const char *limits; /* "s465", "s580" or a file; NULL: none */
     const char *feed;   /* name; NULL: the first */
     const char *replay; /* NULL: none */
 } ev_options;
@@ -40,6 +42,7 @@ int ev_app_run(int argc, char **argv);
 /* One file a command. */
 int ev_command_window(const ev_options *options);
 int ev_command_budget(const ev_options *options);
+int ev_command_beam(const ev_options *options);
 int ev_command_rays(const ev_options *options);
 int ev_command_aperture(const ev_options *options);
 int ev_command_picture(const ev_options *options);

@@ -8,7 +8,16 @@
 #include <stdlib.h>
 #include <string.h>
 
-typedef enum { TAKES_NOTHING, TAKES_COUNT, TAKES_SCALE, TAKES_SIZE, TAKES_TEXT, TAKES_SET } takes;
+typedef enum {
+    TAKES_NOTHING,
+    TAKES_COUNT,
+    TAKES_SCALE,
+    TAKES_DEGREES,
+    TAKES_CUT,
+    TAKES_SIZE,
+    TAKES_TEXT,
+    TAKES_SET
+} takes;
 
 typedef struct option {
     const char *name, *value, *meaning;
@@ -30,7 +39,17 @@ static const option table[] = {
     {"--rays", "COUNT", "number of rays (1000)", TAKES_COUNT, AT(rays), 1, 1000000},
     {"--section", "", "rays in the plane of symmetry instead of all round", TAKES_NOTHING,
      AT(section), 0, 0},
-    {"--grid", "COUNT", "points across the aperture (65)", TAKES_COUNT, AT(grid), 2, 2001},
+    {"--grid", "COUNT", "points across the aperture (65) or the map (129)", TAKES_COUNT, AT(grid),
+     2, 2001},
+    {"--cut", "PHI", "a cut through the peak, PHI degrees from the plane of symmetry", TAKES_CUT,
+     AT(cut), -360, 360},
+    {"--map", "", "the beam over direction cosines, as CSV", TAKES_NOTHING, AT(map), 0, 0},
+    {"--span", "DEGREES", "half width of cut or map (twelve lobes; 90 with limits)", TAKES_DEGREES,
+     AT(span), 0, 89},
+    {"--limits", "NAME", "s465, s580 (ITU-R S.465-6, S.580-6) or a CSV angle_deg,level_dbi",
+     TAKES_TEXT, AT(limits), 0, 0},
+    {"--second", "", "a second opinion with the subreflector's own currents (slow)", TAKES_NOTHING,
+     AT(second), 0, 0},
     {"--size", "WxH", "pixels of the page (1280x800), at least 1100x700", TAKES_SIZE, 0, 0, 0},
     {"--scale", "FACTOR", "pixels of the PNG for one of the page (1 to 8)", TAKES_SCALE, AT(scale),
      0, 0},
@@ -128,11 +147,28 @@ static int read_scale(const option *found, const char *value, ev_options *option
     return EV_EXIT_DONE;
 }
 
+static int read_degrees(const option *found, const char *value, ev_options *options)
+{
+    char *end;
+    double number = strtod(value, &end);
+    bool zero_too = found->takes == TAKES_CUT;
+    if (end == value || *end || !(number >= found->low && number <= found->high) ||
+        (number == 0.0 && !zero_too))
+        return ev_usage_error("'%s %s': expected degrees from %d to %d", found->name, value,
+                              found->low, found->high);
+    *(double *)((char *)options + found->offset) = number;
+    options->has_cut |= found->takes == TAKES_CUT;
+    return EV_EXIT_DONE;
+}
+
 static int take_value(const option *found, const char *value, ev_options *options)
 {
     switch (found->takes) {
     case TAKES_COUNT:
         return read_count(found, value, options);
+    case TAKES_DEGREES:
+    case TAKES_CUT:
+        return read_degrees(found, value, options);
     case TAKES_SIZE:
         return read_size(value, options);
     case TAKES_SCALE:

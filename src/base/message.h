@@ -88,11 +88,8 @@
     "ellipsoid) first"
 #define EV_MESSAGE_entry_absent "'%s' cannot be set: this antenna has no %s"
 
-/* Pattern tables */
-#define EV_MESSAGE_table_header                                                                    \
-    "the first line of a pattern table is 'theta_deg,e_db,h_db' or "                               \
-    "'theta_deg,e_db,h_db,phase_deg', "                                                            \
-    "here it is '%.60s'"
+/* Tables of numbers: patterns, limits */
+#define EV_MESSAGE_table_header "the first line of this table must be '%s', here it is '%.60s'"
 #define EV_MESSAGE_table_columns "%d values in a line, expected %d as in the header"
 #define EV_MESSAGE_table_number "'%.40s' is no number; expected plain numbers between commas"
 #define EV_MESSAGE_table_angle "theta_deg is %s; expected 0 to 180"
@@ -101,6 +98,9 @@
 #define EV_MESSAGE_table_phase "phase_deg is %s; expected -1e6 to 1e6"
 #define EV_MESSAGE_table_short "%d angles; a pattern needs at least 2, better one every few degrees"
 #define EV_MESSAGE_table_long "more than %d angles; thin the table out"
+#define EV_MESSAGE_limit_angle "angle_deg is %s; expected 0 to 180"
+#define EV_MESSAGE_limit_order "angle_deg must not fall from line to line: %s comes after %s"
+#define EV_MESSAGE_limit_short "%d angles; a limit needs at least 2"
 #define EV_MESSAGE_table_no_power                                                                  \
     "the table '%s' radiates nothing: all its levels are below -200 dB"
 

@@ -99,27 +99,38 @@ static void print_line(FILE *stream, const row *header, const row *line)
     fputs("\r\n", stream);
 }
 
-void ev_report_csv(FILE *stream, const ev_report *reports, int count)
+void ev_json_print_csv(FILE *stream, json_t *const *lines, int count)
 {
     row *header = calloc(2, sizeof *header), *line = header + 1;
     if (!header)
         abort();
-    for (int pass = 0; pass < 2; pass++) {
-        for (int i = 0; pass == 1 && i < header->count; i++)
-            fprintf(stream, "%s%s", i > 0 ? "," : "", header->keys[i]);
-        if (pass == 1)
-            fputs("\r\n", stream);
-        for (int i = 0; i < count; i++)
-            for (int feed = 0; feed < reports[i].budget->feed_count; feed++) {
-                json_t *tree = line_of(&reports[i], feed);
-                line->count = 0;
-                flatten("", tree, line);
-                if (pass == 0)
-                    merge_header(header, line);
-                else
-                    print_line(stream, header, line);
-                json_decref(tree);
-            }
+    for (int i = 0; i < count; i++) {
+        line->count = 0;
+        flatten("", lines[i], line);
+        merge_header(header, line);
+    }
+    for (int i = 0; i < header->count; i++)
+        fprintf(stream, "%s%s", i > 0 ? "," : "", header->keys[i]);
+    fputs("\r\n", stream);
+    for (int i = 0; i < count; i++) {
+        line->count = 0;
+        flatten("", lines[i], line);
+        print_line(stream, header, line);
     }
     free(header);
+}
+
+void ev_report_csv(FILE *stream, const ev_report *reports, int count)
+{
+    json_t **lines = calloc((size_t)count * EV_FEED_CAPACITY, sizeof *lines);
+    int line_count = 0;
+    if (!lines)
+        abort();
+    for (int i = 0; i < count; i++)
+        for (int feed = 0; feed < reports[i].budget->feed_count; feed++)
+            lines[line_count++] = line_of(&reports[i], feed);
+    ev_json_print_csv(stream, lines, line_count);
+    for (int i = 0; i < line_count; i++)
+        json_decref(lines[i]);
+    free(lines);
 }

@@ -4,6 +4,7 @@
 #pragma once
 
 #include "base/diagnostic.h"
+#include "optics/beam.h"
 #include "optics/budget.h"
 #include "study/verdict.h"
 
@@ -16,6 +17,7 @@ typedef struct ev_report {
     const ev_budget *budget;
     const ev_verdict *verdict;      /* of the first feed */
     const ev_diagnostics *warnings; /* may be NULL */
+    const ev_beam *beams;           /* of each feed; NULL: not computed */
 } ev_report;
 
 /* One JSON object, or with `as_list` a list of them. Numbers carry 17 digits. Values that do not

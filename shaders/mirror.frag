@@ -8,6 +8,7 @@ uniform float opacity;
 uniform float grid;       // strength of the polar grid, 0 for none
 uniform float hatch_step; // device pixels; 0: no hatching on the back
 uniform float shade;      // strength of the shadows, 0 for none
+uniform float side;       // 1: only what shows its reflecting side, -1: only backs, 0: both
 uniform sampler2D shadows;
 in float facing;
 in vec2 on_aperture;
@@ -17,6 +18,9 @@ out vec4 colour;
 
 void main()
 {
+    if (side * facing < 0.0) {
+        discard;
+    }
     if (facing < 0.0) {
         float stripe = mod(gl_FragCoord.x + gl_FragCoord.y, max(hatch_step, 1.0) * 1.414);
         float line = clamp(1.1 - abs(stripe - 1.0), 0.0, 1.0) * 0.55 * step(1e-3, hatch_step);

@@ -26,7 +26,7 @@ static bool blocked_by_sub(const ev_antenna *antenna, ev_vec3 point, ev_vec3 tow
     if (!antenna->dual) {
         return false;
     }
-    double own = 0.04 * antenna->sub.semi_long; /* a point of the subreflector's own outline */
+    double own = 0.08 * antenna->sub.semi_long; /* a point of the subreflector's own outline */
     int count = ev_conic_intersect(&antenna->sub.placed, point, toward, t);
     for (int i = 0; i < count; ++i) {
         if (t[i] > own && t[i] < far &&
@@ -182,11 +182,11 @@ static void ink_strut(const ev_ink *ink, const ev_strip *strip)
         ev_vec3 way = ev_vec3_sub(foot, top);
         points[i] = ev_vec3_along(top, 0.995 * i / PIECES, way);
     }
-    double dim = fmax(ink->emphasis.rest, ink->emphasis.fate[EV_FATE_SHADOW_STRUTS]);
+    double dim = fmax(0.5, fmax(ink->emphasis.rest, ink->emphasis.fate[EV_FATE_SHADOW_STRUTS]));
     double width = ev_eye_pixels(&ink->eye, top, 2.0 * strip->half_width);
     width = fmax(2.0, fmin(width, 12.0));
     ev_nib nib = {.width = width + 2.5,
-                  .alpha = 0.9,
+                  .alpha = 0.9 * dim,
                   .colour = ink->theme->ground,
                   .joined = true,
                   .cast = true};

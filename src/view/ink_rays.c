@@ -3,7 +3,7 @@
 
 #include <math.h>
 
-static const double lost_alpha = 0.75;
+static const double lost_alpha = 0.85;
 
 static double ray_dim(const ev_ink *ink, const ev_ray *ray)
 {

@@ -1,7 +1,7 @@
-/* One picture of the antenna in space, back to front:
- *   what is furthest (dish from the sky side, Front from behind), the rays, the solid parts with
- *   depth among themselves, what is nearest. The outlines, whose hidden pieces the ink has dimmed,
- *   go into the Stage's layer, under its words. */
+/* One picture of the antenna in space, back to front: the Front when seen from behind, the hollow
+ * of the dish, the rays, the solid parts with depth among themselves, the back of the dish, the
+ * Front when seen from the sky. The outlines, whose hidden pieces the ink has dimmed, go into the
+ * Stage's layer, under its words. */
 #include "view/space.h"
 
 #include "shaders.h"
@@ -128,7 +128,7 @@ static void set_number(GLuint program, const char *name, double value)
 
 /* How a surface is painted. */
 typedef struct surface_coat {
-    double opacity, grid, hatch_step, shade;
+    double opacity, grid, hatch_step, shade, side;
 } surface_coat;
 
 static void place_mesh(GLuint program, const ev_ink *ink, const ev_mesh *mesh)
@@ -161,6 +161,7 @@ static void draw_mirror(const ev_space *space, const ev_ink *ink, int id, surfac
     set_number(space->mirror, "grid", coat.grid);
     set_number(space->mirror, "hatch_step", coat.hatch_step * ink->scale);
     set_number(space->mirror, "shade", coat.shade);
+    set_number(space->mirror, "side", coat.side);
     glBindTexture(GL_TEXTURE_2D, space->shadows.id);
     ev_grid_draw(&space->grids[id]);
 }
@@ -182,11 +183,18 @@ static void draw_front(const ev_space *space, const ev_ink *ink)
     ev_grid_draw(&space->grids[FRONT]);
 }
 
-static void draw_dish(const ev_space *space, const ev_ink *ink, bool nearest)
+/* The dish shows each line of sight its hollow side, its back, or first the back and behind it the
+ * hollow; each alone never overlaps itself. */
+static void draw_dish_hollow(const ev_space *space, const ev_ink *ink)
 {
-    surface_coat coat = {
-        .opacity = nearest ? 0.86 : 1.0, .grid = 0.13, .hatch_step = EV_HATCH_STEP, .shade = 0.22};
-    draw_mirror(space, ink, DISH, coat);
+    draw_mirror(space, ink, DISH,
+                (surface_coat){.opacity = 1.0, .grid = 0.13, .shade = 0.22, .side = 1.0});
+}
+
+static void draw_dish_back(const ev_space *space, const ev_ink *ink)
+{
+    draw_mirror(space, ink, DISH,
+                (surface_coat){.opacity = 0.86, .hatch_step = EV_HATCH_STEP, .side = -1.0});
 }
 
 /* Subreflector and horns: opaque, hidden by each other. */
@@ -281,18 +289,16 @@ void ev_space_draw(ev_space *space, const ev_layers *layers, const ev_space_inpu
     update_shadows(space, antenna);
     update_meshes(space, input->sheet, ink.stand);
     begin_viewport(input, pixel_height);
-    if (from_sky) {
-        draw_dish(space, &ink, false);
-    } else {
+    if (!from_sky) {
         draw_front(space, &ink);
     }
+    draw_dish_hollow(space, &ink);
     ev_ink_rays(&ink);
     show_rays(space, layers, input);
     draw_solids(space, &ink);
+    draw_dish_back(space, &ink);
     if (from_sky) {
         draw_front(space, &ink);
-    } else {
-        draw_dish(space, &ink, true);
     }
     ink_outlines(space, &ink);
     glViewport(0, 0, pixel_width, pixel_height);

@@ -55,7 +55,7 @@ static void append(const obstacle *work, const ev_region_nodes *nodes, ev_shadow
 
 enum { PANEL = 256, SEED_CAPACITY = 8 * EV_SHADOW_BODY_CAPACITY + 64 };
 
-/* Nodes a radian: 0.3 by Gauss, a few to begin with (rings.c); uniform angles need one a radian. */
+/* Nodes a radian: 0.31 by Gauss, a few to begin with (rings.c); uniform angles need one a radian. */
 static void add_obstacle(const ev_shadows *shadows, int index, double phase,
                          ev_shadow_points *points)
 {
@@ -64,8 +64,8 @@ static void add_obstacle(const ev_shadows *shadows, int index, double phase,
     bool strip = ev_shadow_is_strip(shadows, index);
     double along = phase * fmin(1.0, extent[0] / shadows->radius);
     double across = phase * fmin(1.0, extent[1] / shadows->radius);
-    int radial = (int)(10.0 + 0.3 * along);
-    int lines = (int)(strip ? 5.0 + 0.3 * across : 28.0 + 1.2 * across);
+    int radial = (int)(12.0 + 0.31 * along);
+    int lines = (int)(strip ? 7.0 + 0.31 * across : 28.0 + 1.2 * across);
     obstacle work = {.shadows = shadows, .index = index, .panels = (radial + PANEL - 1) / PANEL};
     ev_region region = {
         .slice = slice, .context = &work, .seeds = seeds, .rows = strip, .shared = true};

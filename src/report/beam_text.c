@@ -16,18 +16,21 @@ static int digits_for(double width)
     return wide > 10.0 ? 2 : wide > 1.0 ? 3 : wide > 0.1 ? 4 : 5;
 }
 
+/* A number in its column; a dash where there is none, and no sign on what rounds to nothing. */
+static void print_cell(FILE *stream, double value, int digits)
+{
+    if (isnan(value))
+        fprintf(stream, " %11s", "-");
+    else
+        fprintf(stream, " %11.*f", digits, fabs(value) < 0.5 * pow(10.0, -digits) ? 0.0 : value);
+}
+
 static void print_pair(FILE *stream, const char *label, double x, double y, int digits,
                        const char *unit)
 {
     fprintf(stream, "  %-26s", label);
-    if (isfinite(x))
-        fprintf(stream, " %11.*f", digits, x);
-    else
-        fprintf(stream, " %11s", "-");
-    if (isfinite(y))
-        fprintf(stream, " %11.*f", digits, y);
-    else
-        fprintf(stream, " %11s", "-");
+    print_cell(stream, x, digits);
+    print_cell(stream, y, digits);
     fprintf(stream, "  %s\n", unit);
 }
 

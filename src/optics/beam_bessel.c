@@ -65,10 +65,11 @@ static void upward(const double *restrict x, int highest, double *restrict value
     }
 }
 
-/* Order from which on J_n(x) is below 1e-18 (a margin over the turning point at n = x). */
+/* Order from which on J_n(x) is below 1e-18: a margin over the turning point at n = x, and few for
+ * tiny arguments, where (2 n / x)^n would overflow. Rises with x. */
 static int start_order(double x)
 {
-    return (int)(x + 22.0 + 14.0 * cbrt(x));
+    return x < 1e-3 ? 8 : (int)(x + 22.0 + 14.0 * cbrt(x));
 }
 
 /* One order down; `sum` collects the even orders. */
@@ -88,7 +89,7 @@ static void downward(const double *restrict x, int highest, double *restrict val
     double inverse[EV_LANES], sum[EV_LANES] = {0}, rows[3][EV_LANES] = {{0}};
     int start[EV_LANES], lane = EV_LANES - 1;
     for (int i = 0; i < EV_LANES; i++) {
-        double argument = fmax(x[i], 1e-10);
+        double argument = fmax(x[i], 1e-20);
         inverse[i] = 2.0 / argument;
         start[i] = start_order(argument);
     }

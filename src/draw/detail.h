@@ -13,6 +13,9 @@ typedef struct ev_detail {
     ev_plot_map map;
 } ev_detail;
 
+/* Two lines under the circle. */
+void ev_detail_caption(ev_pen *pen, const ev_sheet *sheet, const ev_detail *detail);
+
 enum { EV_RING_CAPACITY = 5 };
 
 /* Where the rings found room for their labels, innermost first. */

@@ -118,6 +118,7 @@ typedef struct ev_sheet {
     ev_stage_mode stage;
     ev_plate plate; /* the one shown where there is room for one */
     bool dark;
+    bool paper; /* nothing to press: no button, tabs or marks of the pointer */
     bool unsaved, can_undo, can_redo, detail, grabbed, stale;
     char pointed[80]; /* name of the hot box under the pointer, or "" */
     char notice[160]; /* one line of news: "Undid: feed out", or "" */

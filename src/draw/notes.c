@@ -30,6 +30,8 @@ static double draw_tab(ev_pen *pen, const ev_sheet *sheet, const char *name, con
 void ev_stage_tabs(ev_pen *pen, const ev_sheet *sheet, const char *words)
 {
     double x = pen->region.x + 24.0;
+    if (sheet->paper)
+        return;
     x = draw_tab(pen, sheet, "tab.section", "Section", x, sheet->stage == EV_STAGE_SECTION);
     x = draw_tab(pen, sheet, "tab.space", "Space", x, sheet->stage == EV_STAGE_SPACE);
     if (words[0])

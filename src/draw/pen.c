@@ -29,6 +29,11 @@ void ev_pen_end(ev_pen *pen)
     cairo_restore(pen->cairo);
 }
 
+bool ev_pen_is_image(const ev_pen *pen)
+{
+    return cairo_surface_get_type(cairo_get_group_target(pen->cairo)) == CAIRO_SURFACE_TYPE_IMAGE;
+}
+
 void ev_pen_colour(ev_pen *pen, ev_colour colour, double opacity)
 {
     cairo_set_source_rgba(pen->cairo, colour.r, colour.g, colour.b, opacity * pen->strength);

@@ -20,6 +20,9 @@ ev_pen ev_pen_begin(cairo_t *cairo, bool dark, ev_boxes *boxes, const char *name
 void ev_pen_ground(ev_pen *pen);
 void ev_pen_end(ev_pen *pen);
 
+/* Whether pixels are drawn, not paper: some marks are made differently for speed. */
+bool ev_pen_is_image(const ev_pen *pen);
+
 void ev_pen_colour(ev_pen *pen, ev_colour colour, double opacity);
 
 /* Strokes and fills of one call each; a width of 0 means a fill. */

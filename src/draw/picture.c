@@ -54,7 +54,8 @@ static void draw_sheet(cairo_surface_t *surface, double width, double height, do
 {
     ev_sheet section = *sheet;
     section.stage = EV_STAGE_SECTION;
-    section.action_count = 0; /* paper has no keys */
+    section.paper = true;
+    section.action_count = 0;
     section.pointed[0] = 0;
     ev_page page = ev_page_layout(width, height);
     ev_boxes *boxes = ev_allocate(sizeof *boxes);

@@ -254,7 +254,7 @@ static void record(ev_pen *pen, const ev_words *words, ev_rect rect)
 static void draw_halo(ev_pen *pen, PangoLayout *layout)
 {
     ev_pen_colour(pen, pen->theme->ground, 0.85);
-    if (cairo_surface_get_type(cairo_get_group_target(pen->cairo)) != CAIRO_SURFACE_TYPE_IMAGE) {
+    if (!ev_pen_is_image(pen)) {
         pango_cairo_layout_path(pen->cairo, layout);
         cairo_set_line_width(pen->cairo, 4.0);
         cairo_set_line_join(pen->cairo, CAIRO_LINE_JOIN_ROUND);

@@ -57,7 +57,7 @@ void ev_draw_verdict(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet,
     ev_pen_ground(&pen);
     const ev_verdict *verdict = sheet->verdict;
     double end = page->verdict.x + page->verdict.width - margin;
-    if (verdict->move_count > 0)
+    if (verdict->move_count > 0 && !sheet->paper)
         end = draw_button(&pen, sheet) - 20.0;
     pen.strength = sheet->stale ? EV_STALE : 1.0;
 

@@ -121,6 +121,13 @@ static void button_stands_only_where_there_is_a_move(void **state)
         *(has ? &with : &without) += 1;
     }
     assert_true(with > 0 && without > 0);
+    for (int i = 0; i < list->count; ++i) { /* and never on paper */
+        ev_sheet sheet = list->items[i]->sheet;
+        sheet.paper = true;
+        cairo_surface_destroy(draw_page(&sheet, 1280.0, 800.0, boxes));
+        assert_null(ev_boxes_find(boxes, "button.move"));
+        assert_null(ev_boxes_find(boxes, "tab.space"));
+    }
     free(boxes);
 }
 
@@ -193,6 +200,11 @@ static void ledger_draws_the_budget(void **state)
         assert_true(fabs(read_drawn(gain->text) - budget->gain_on_axis_dbi) <= 0.00501);
         const ev_box *full = ev_boxes_find(boxes, "text.ledger.full.db");
         assert_true(fabs(read_drawn(full->text) - budget->full_aperture_gain_dbi) <= 0.00501);
+        const ev_box *share = ev_boxes_find(boxes, "text.ledger.total.share");
+        double of_full =
+            pow(10.0, 0.1 * (budget->gain_on_axis_dbi - budget->full_aperture_gain_dbi));
+        assert_true(fabs(read_drawn(share->text) - 100.0 * of_full) <= 0.501);
+        assert_non_null(strstr(share->text, " % of full"));
         /* What is drawn adds up: full gain, ten rows, gain. */
         double sum = read_drawn(full->text);
         static const char *const rows[] = {"past_sub", "past_main",    "taper",    "phase",

@@ -59,7 +59,7 @@ formatted() {
 
 tidy() {
     cd "$top" && git ls-files 'src/*.c' |
-        xargs -P 2 -n 4 clang-tidy --quiet -p "$builds/clang" --warnings-as-errors='*'
+        xargs -P 2 -n 1 clang-tidy --quiet -p "$builds/clang" --warnings-as-errors='*'
 }
 
 export ASAN_OPTIONS=detect_leaks=1 UBSAN_OPTIONS=print_stacktrace=1

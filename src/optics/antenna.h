@@ -11,14 +11,15 @@
 /* The subreflector: its conic twice, as designed and as it sits, and its rim.
  * The geometric rim is where the cone from the prime focus over the main rim cuts the conic; it is
  * a planar ellipse. `oversize` widens both its semi-axes; a point belongs to the mirror when its
- * foot, square to the rim plane, lies in the widened ellipse. Rim members are in the frame of the
+ * foot, square to the rim plane, lies in the widened ellipse (and it is not on the far half of an
+ * ellipsoid, which such a line meets as well). Rim members are in the frame of the
  * antenna for the mirror AS DESIGNED; ev_sub_place and ev_sub_unplace move points. */
 typedef struct ev_sub {
     ev_sub_shape shape;
     ev_conic nominal, placed;
     ev_vec3 prime_focus, feed_focus; /* nominal foci */
-    ev_vec3 rim_centre, rim_long, rim_short,
-        rim_normal;               /* unit vectors; long lies in y = 0 or is x */
+    /* unit vectors; long lies in y = 0, normal is on the prime focus's side of the mirror */
+    ev_vec3 rim_centre, rim_long, rim_short, rim_normal;
     double semi_long, semi_short; /* m, geometric */
     double oversize;              /* m */
     ev_vec3 shift;

@@ -28,10 +28,11 @@ ev_vec3 ev_conic_far_focus(const ev_conic *conic)
     return ev_vec3_along(conic->vertex, near_distance(conic) * (1.0 + e) / (1.0 - e), conic->axis);
 }
 
+/* A hyperboloid has another sheet behind the vertex; the other conics are whole. */
 static bool on_sheet(const ev_conic *conic, double s)
 {
     double e = conic->eccentricity;
-    return 1.0 + conic->curvature * (e * e - 1.0) * s > 0.0;
+    return e <= 1.0 || 1.0 + conic->curvature * (e * e - 1.0) * s > 0.0;
 }
 
 double ev_conic_side(const ev_conic *conic, ev_vec3 point)
@@ -44,7 +45,7 @@ double ev_conic_side(const ev_conic *conic, ev_vec3 point)
 bool ev_conic_contains(const ev_conic *conic, ev_vec3 point)
 {
     double s = ev_vec3_dot(ev_vec3_sub(point, conic->vertex), conic->axis);
-    return ev_conic_side(conic, point) < 0.0 && (conic->eccentricity <= 1.0 || on_sheet(conic, s));
+    return ev_conic_side(conic, point) < 0.0 && on_sheet(conic, s);
 }
 
 static ev_vec3 gradient(const ev_conic *conic, ev_vec3 point)

@@ -7,7 +7,7 @@
  *     c (rho^2 + (1 - e^2) s^2) = 2 s ,    c = 1 / (f (1 + e)) ,
  *
  * f being the distance from the vertex to the near focus (at s = +f). The sheet meant is the one
- * through the vertex; of an ellipsoid, the half nearer to it. */
+ * through the vertex. */
 #pragma once
 
 #include "base/vec3.h"

@@ -30,12 +30,19 @@ static double half_width_at(const ev_conic *conic, ev_vec3 centre)
     return sqrt(rho2 - (ev_vec3_dot(x, x) - s * s));
 }
 
+/* A line square to the rim plane meets the conic at most twice: once where it faces that way. */
+static bool on_mirror_half(const ev_sub *sub, ev_vec3 nominal)
+{
+    return ev_vec3_dot(ev_conic_normal(&sub->nominal, nominal), sub->rim_normal) > 0.0;
+}
+
 static bool build_rim(const ev_main_design *main, ev_sub *sub)
 {
     double radius = 0.5 * main->diameter;
-    ev_vec3 top, bottom;
+    ev_vec3 top, bottom, middle;
     if (!ev_sub_point_for(sub, main_rim_point(main, main->offset + radius), &top) ||
-        !ev_sub_point_for(sub, main_rim_point(main, main->offset - radius), &bottom))
+        !ev_sub_point_for(sub, main_rim_point(main, main->offset - radius), &bottom) ||
+        !ev_sub_point_for(sub, main_rim_point(main, main->offset), &middle))
         return false;
     ev_vec3 chord = ev_vec3_sub(top, bottom);
     sub->rim_centre = ev_vec3_scale(0.5, ev_vec3_add(top, bottom));
@@ -44,6 +51,8 @@ static bool build_rim(const ev_main_design *main, ev_sub *sub)
     sub->rim_long = ev_vec3_unit(chord);
     sub->rim_short = ev_vec3_make(0.0, 1.0, 0.0);
     sub->rim_normal = ev_vec3_cross(sub->rim_long, sub->rim_short);
+    if (!on_mirror_half(sub, middle))
+        sub->rim_normal = ev_vec3_scale(-1.0, sub->rim_normal);
     return sub->semi_long > 0.0 && sub->semi_short > 0.0;
 }
 
@@ -123,9 +132,11 @@ double ev_design_half_extent(const ev_design *design)
 /* Sub rim points and the test for being within it. */
 double ev_sub_inside(const ev_sub *sub, ev_vec3 point)
 {
-    ev_vec3 arm = ev_vec3_sub(ev_sub_unplace(sub, point), sub->rim_centre);
+    ev_vec3 nominal = ev_sub_unplace(sub, point), arm = ev_vec3_sub(nominal, sub->rim_centre);
     double u = ev_vec3_dot(arm, sub->rim_long) / (sub->semi_long + sub->oversize);
     double v = ev_vec3_dot(arm, sub->rim_short) / (sub->semi_short + sub->oversize);
+    if (sub->shape == EV_SUB_ELLIPSOID && !on_mirror_half(sub, nominal))
+        return -1.0;
     return 1.0 - hypot(u, v);
 }
 
@@ -136,10 +147,12 @@ ev_vec3 ev_sub_point(const ev_sub *sub, double r, double t)
     foot = ev_vec3_along(foot, r * sin(t) * (sub->semi_short + sub->oversize), sub->rim_short);
     double roots[2];
     int count = ev_conic_intersect(&sub->nominal, foot, sub->rim_normal, roots);
-    if (count == 0)
-        return ev_sub_place(sub, foot);
-    double nearest = count == 2 && fabs(roots[1]) < fabs(roots[0]) ? roots[1] : roots[0];
-    return ev_sub_place(sub, ev_vec3_along(foot, nearest, sub->rim_normal));
+    for (int i = 0; i < count; i++) {
+        ev_vec3 point = ev_vec3_along(foot, roots[i], sub->rim_normal);
+        if (on_mirror_half(sub, point))
+            return ev_sub_place(sub, point);
+    }
+    return ev_sub_place(sub, foot);
 }
 
 ev_vec3 ev_sub_rim_point(const ev_sub *sub, double t)

@@ -239,28 +239,68 @@ static ev_order order_of(const ev_antenna *antenna, int obstacle, ev_order order
     return (ev_order){along, lines};
 }
 
-void ev_nodes_shadow(const ev_cut *cut, const bool *flags, ev_order order, ev_nodes *nodes)
+enum { CORNER_CAPACITY = 16, OUTLINE_LOOKS = 48 };
+
+/* Where the conditions begin and end along the aperture's rim: corners of what is shadowed. */
+static int find_corners(const ev_cut *cut, double corners[CORNER_CAPACITY])
+{
+    sweep over = {.outer = cut->antenna->radius};
+    prepare(cut, -1, RING_SAMPLES, &over);
+    return !over.by_margin ? 0
+                           : ev_margin_changes(&over.margin, over.outer, 0.0, 2.0 * EV_PI,
+                                               RING_LOOKS, corners, CORNER_CAPACITY);
+}
+
+static int shadow_seeds(const sweep *over, const double *corners, int corner_count,
+                        double seeds[SEED_CAPACITY])
+{
+    const ev_antenna *antenna = over->cut->antenna;
+    const ev_shadows *shadows = &antenna->shadows;
+    int room = SEED_CAPACITY - 2 * CORNER_CAPACITY;
+    int count = ev_shadow_seeds(shadows, over->obstacle, seeds, room);
+    double low = seeds[0], high = seeds[count - 1];
+    for (int i = 0; i < corner_count; i++) {
+        double x = antenna->offset + antenna->radius * cos(corners[i]);
+        double y = antenna->radius * sin(corners[i]);
+        double at = ev_shadow_line_through(shadows, over->obstacle, x, y);
+        if (at > low && at < high)
+            seeds[count++] = at;
+    }
+    if (over->by_margin && !ev_shadow_is_strip(shadows, over->obstacle))
+        count += ev_margin_changes(&over->margin, 1.0, low, high, OUTLINE_LOOKS, seeds + count,
+                                   CORNER_CAPACITY);
+    qsort(seeds, (size_t)count, sizeof seeds[0], compare_doubles);
+    return count;
+}
+
+static void add_shadow(const ev_cut *cut, int obstacle, ev_order order, const double *corners,
+                       int corner_count, ev_nodes *nodes)
 {
     const ev_shadows *shadows = &cut->antenna->shadows;
     double seeds[SEED_CAPACITY];
+    sweep over = {0};
+    ev_region_nodes bare;
+    prepare(cut, obstacle, SHADOW_SAMPLES, &over);
+    ev_region region = {.slice = slice,
+                        .context = &over,
+                        .seeds = seeds,
+                        .seed_count = shadow_seeds(&over, corners, corner_count, seeds),
+                        .rows = ev_shadow_is_strip(shadows, obstacle),
+                        .shared = true};
+    ev_order own = order_of(cut->antenna, obstacle, order);
+    ev_region_integrate(&region, own.radial, own.around, &bare);
+    append(&over, &bare, ev_shadow_scale(shadows, obstacle), nodes);
+    free(bare.items);
+}
+
+void ev_nodes_shadow(const ev_cut *cut, const bool *flags, ev_order order, ev_nodes *nodes)
+{
+    double corners[CORNER_CAPACITY];
+    int corner_count = find_corners(cut, corners);
     *nodes = (ev_nodes){0};
-    for (int obstacle = 0; obstacle < ev_shadow_count(shadows); obstacle++) {
-        if (flags && !flags[obstacle])
-            continue;
-        sweep over = {0};
-        ev_region_nodes bare;
-        ev_order own = order_of(cut->antenna, obstacle, order);
-        prepare(cut, obstacle, SHADOW_SAMPLES, &over);
-        ev_region region = {.slice = slice,
-                            .context = &over,
-                            .seeds = seeds,
-                            .rows = ev_shadow_is_strip(shadows, obstacle),
-                            .shared = true};
-        region.seed_count = ev_shadow_seeds(shadows, obstacle, seeds, SEED_CAPACITY);
-        ev_region_integrate(&region, own.radial, own.around, &bare);
-        append(&over, &bare, ev_shadow_scale(shadows, obstacle), nodes);
-        free(bare.items);
-    }
+    for (int obstacle = 0; obstacle < ev_shadow_count(&cut->antenna->shadows); obstacle++)
+        if (!flags || flags[obstacle])
+            add_shadow(cut, obstacle, order, corners, corner_count, nodes);
     evaluate_all(cut, nodes);
 }
 

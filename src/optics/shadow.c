@@ -91,6 +91,18 @@ ev_line ev_shadow_line(const ev_shadows *shadows, int obstacle, double u)
     return (ev_line){shadows->centre_x - u * s, u * c, c, s};
 }
 
+double ev_shadow_line_through(const ev_shadows *shadows, int obstacle, double x, double y)
+{
+    if (!ev_shadow_is_strip(shadows, obstacle)) {
+        const ev_outline *outline = outline_at(shadows, obstacle);
+        vec2 q = to_circle(outline, x - outline->x, y - outline->y);
+        double u = atan2(q.y, q.x);
+        return u < 0.0 ? u + 2.0 * EV_PI : u;
+    }
+    double angle = strip_at(shadows, obstacle)->angle;
+    return y * cos(angle) - (x - shadows->centre_x) * sin(angle);
+}
+
 double ev_shadow_scale(const ev_shadows *shadows, int obstacle)
 {
     if (ev_shadow_is_strip(shadows, obstacle))
@@ -348,30 +360,103 @@ static void seed_corners(const ev_shadows *shadows, const ev_strip *own, const e
         }
 }
 
-enum { BASE_ANGLES = 8 };
+/* > 0 outside b, at the angle t of a. */
+static double outside_at(const ev_outline *a, const ev_outline *b, double t)
+{
+    double c = cos(t), s = sin(t);
+    vec2 q = to_circle(b, a->x + c * a->ux + s * a->vx - b->x, a->y + c * a->uy + s * a->vy - b->y);
+    return q.x * q.x + q.y * q.y - 1.0;
+}
+
+enum { CROSSING_LOOKS = 64 };
+
+/* The lines of an obstacle that run through points where two outlines cross. */
+static void seed_crossings(const ev_shadows *shadows, int obstacle, const ev_outline *a,
+                           const ev_outline *b, seeds *to)
+{
+    double step = 2.0 * EV_PI / CROSSING_LOOKS, last = outside_at(a, b, 0.0);
+    for (int i = 1; i <= CROSSING_LOOKS; i++) {
+        double low = (i - 1) * step, high = i * step, now = outside_at(a, b, high);
+        bool crosses = (now > 0.0) != (last > 0.0), outside = last > 0.0;
+        last = now;
+        for (int k = 0; crosses && k < 46; k++) {
+            double middle = 0.5 * (low + high);
+            *((outside_at(a, b, middle) > 0.0) == outside ? &low : &high) = middle;
+        }
+        if (crosses)
+            add_seed(to, ev_shadow_line_through(shadows, obstacle,
+                                                a->x + cos(low) * a->ux + sin(low) * a->vx,
+                                                a->y + cos(low) * a->uy + sin(low) * a->vy));
+    }
+}
+
+enum { BASE_ANGLES = 8, CIRCLES = 4 };
+
+/* Circles about the aperture centre that can end what an obstacle shadows: rim, hole, and a
+ * strip's own two ends. */
+static int list_circles(const ev_shadows *shadows, int obstacle, ev_outline circles[CIRCLES])
+{
+    int count = 0;
+    circles[count++] = circle(shadows, shadows->radius);
+    if (shadows->hole_radius > 0.0)
+        circles[count++] = circle(shadows, shadows->hole_radius);
+    if (!ev_shadow_is_strip(shadows, obstacle))
+        return count;
+    const ev_strip *strip = strip_at(shadows, obstacle);
+    if (strip->from > 0.0)
+        circles[count++] = circle(shadows, strip->from);
+    if (strip->to < shadows->radius)
+        circles[count++] = circle(shadows, strip->to);
+    return count;
+}
+
+/* Breaks that one earlier outline causes: tangents, and its corners with the others and itself. */
+static void seed_outline(const ev_shadows *shadows, int obstacle, int earlier, seeds *to)
+{
+    const ev_outline *outline = outline_at(shadows, earlier);
+    ev_outline circles[CIRCLES];
+    int circle_count = list_circles(shadows, obstacle, circles);
+    bool strip = ev_shadow_is_strip(shadows, obstacle);
+    if (strip)
+        seed_touches(shadows, strip_at(shadows, obstacle), outline, to);
+    else if (earlier < obstacle)
+        seed_tangents(outline_at(shadows, obstacle), outline, to);
+    for (int i = 0; i < circle_count; i++)
+        seed_crossings(shadows, obstacle, outline, &circles[i], to);
+    for (int i = 0; i < earlier; i++)
+        seed_crossings(shadows, obstacle, outline, outline_at(shadows, i), to);
+}
+
+/* Sorts, and drops what is outside the sweep. */
+static int finish_seeds(seeds *found, double low, double high)
+{
+    int kept = 0;
+    for (int i = 0; i < found->count; i++)
+        if (found->items[i] > low && found->items[i] < high)
+            found->items[kept++] = found->items[i];
+    qsort(found->items, (size_t)kept, sizeof found->items[0], compare_doubles);
+    for (int i = kept; i > 0; i--)
+        found->items[i] = found->items[i - 1];
+    found->items[0] = low;
+    found->items[kept + 1] = high;
+    return kept + 2;
+}
 
 int ev_shadow_seeds(const ev_shadows *shadows, int obstacle, double *items, int capacity)
 {
-    seeds found = {items, 0, capacity - 1};
+    seeds found = {items, 0, capacity - 2};
     bool strip = ev_shadow_is_strip(shadows, obstacle);
-    double half = strip ? strip_at(shadows, obstacle)->half_width : 0.0,
-           end = strip ? half : 2.0 * EV_PI;
-    add_seed(&found, -half);
+    double low = strip ? -strip_at(shadows, obstacle)->half_width : 0.0;
+    double high = strip ? -low : 2.0 * EV_PI;
     for (int i = 1; i < BASE_ANGLES && !strip; i++)
-        add_seed(&found, end * i / BASE_ANGLES);
-    for (int i = -2; i < outline_count(shadows) && i < obstacle; i++) {
-        ev_outline round = circle(shadows, i == -1 ? shadows->radius : shadows->hole_radius);
-        if (i == -2 && shadows->hole_radius == 0.0)
-            continue;
-        const ev_outline *other = i < 0 ? &round : outline_at(shadows, i);
-        if (strip)
-            seed_touches(shadows, strip_at(shadows, obstacle), other, &found);
-        else
-            seed_tangents(outline_at(shadows, obstacle), other, &found);
-    }
+        add_seed(&found, high * i / BASE_ANGLES);
+    ev_outline circles[CIRCLES];
+    int circle_count = strip ? 0 : list_circles(shadows, obstacle, circles);
+    for (int i = 0; i < circle_count; i++)
+        seed_tangents(outline_at(shadows, obstacle), &circles[i], &found);
+    for (int i = 0; i < outline_count(shadows) && i <= obstacle; i++)
+        seed_outline(shadows, obstacle, i, &found);
     for (int i = outline_count(shadows); strip && i < obstacle; i++)
         seed_corners(shadows, strip_at(shadows, obstacle), strip_at(shadows, i), &found);
-    qsort(items, (size_t)found.count, sizeof items[0], compare_doubles);
-    items[found.count++] = end;
-    return found.count;
+    return finish_seeds(&found, low, high);
 }

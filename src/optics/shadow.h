@@ -62,6 +62,10 @@ typedef struct ev_line {
 } ev_line;
 
 ev_line ev_shadow_line(const ev_shadows *shadows, int obstacle, double u);
+
+/* The line that runs through a point (outlines: from their centre through it). */
+double ev_shadow_line_through(const ev_shadows *shadows, int obstacle, double x, double y);
+
 double ev_shadow_scale(const ev_shadows *shadows, int obstacle);
 
 /* Size of an obstacle along its lines and across them, m, for choosing numbers of nodes. */

@@ -89,14 +89,15 @@ static double density(const ev_antenna *antenna, int index, double r, double t)
     return ev_feed_launch(antenna, index, ray.out).level * solid / (4.0 * EV_PI);
 }
 
-/* How far outside the main reflector's rim a ray comes down, in radii; < 0 within it. */
+/* How far outside the main reflector's rim a ray comes down, in radii; < 0 within it. It comes down
+ * where it leaves the paraboloid's inside: the farther crossing. */
 static double miss(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
 {
     double t[2];
     int count = ev_conic_intersect(&antenna->main, from, direction, t);
     if (count == 0 || t[count - 1] <= 0.0)
         return 1.0;
-    ev_vec3 hit = ev_vec3_along(from, t[0] > 0.0 ? t[0] : t[1], direction);
+    ev_vec3 hit = ev_vec3_along(from, t[count - 1], direction);
     return hypot(hit.x - antenna->offset, hit.y) / antenna->radius - 1.0;
 }
 

@@ -53,17 +53,16 @@ static bool meet_sub(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction,
     return false;
 }
 
+/* A ray meets the front of the main reflector where it leaves the paraboloid's inside: at the
+ * farther crossing. */
 static bool meet_main(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction, ev_vec3 *hit)
 {
     double t[2];
     int count = ev_conic_intersect(&antenna->main, from, direction, t);
-    for (int i = 0; i < count; i++) {
-        if (t[i] <= 1e-9)
-            continue;
-        *hit = ev_vec3_along(from, t[i], direction);
-        return hypot(hit->x - antenna->offset, hit->y) <= antenna->radius * (1.0 + 1e-12);
-    }
-    return false;
+    if (count == 0 || t[count - 1] <= 1e-9)
+        return false;
+    *hit = ev_vec3_along(from, t[count - 1], direction);
+    return hypot(hit->x - antenna->offset, hit->y) <= antenna->radius * (1.0 + 1e-12);
 }
 
 static void add_point(ev_ray *ray, ev_vec3 point)

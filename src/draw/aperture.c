@@ -114,21 +114,21 @@ static int list_figures(const ev_sheet *sheet, figure figures[FIGURE_CAPACITY])
     if (wavelength / rms < 1000.0)
         snprintf(text, sizeof text, "\u03bb/%.0f", wavelength / rms);
     else
-        snprintf(text, sizeof text, "under \u03bb/1000");
+        snprintf(text, sizeof text, "< \u03bb/1000");
     add_figure(figures, &count, "waves", "that is", text);
     ev_format_error(text, sizeof text, budget->untilted.rms_area, false);
     add_figure(figures, &count, "untilted", "tilt removed", text);
     ev_format_error(text, sizeof text, budget->path_error.peak_to_valley, false);
     add_figure(figures, &count, "valley", "peak to valley", text);
     if (fabs(budget->rim_top_db - budget->rim_bottom_db) < 0.05) {
-        add_level(figures, &count, "rim", "lighting at the rim", budget->rim_top_db);
+        add_level(figures, &count, "rim", "rim", budget->rim_top_db);
     } else {
         add_level(figures, &count, "rim.top", "rim, top", budget->rim_top_db);
         add_level(figures, &count, "rim.bottom", "rim, bottom", budget->rim_bottom_db);
     }
     double shadow =
         power[EV_FATE_SHADOW_SUB] + power[EV_FATE_SHADOW_FEED] + power[EV_FATE_SHADOW_STRUTS];
-    if (shadow > 0.0) {
+    if (shadow >= EV_LEAST_SHARE) {
         ev_format_number(digits, sizeof digits, 100.0 * shadow, 1, false);
         snprintf(text, sizeof text, "%s %%", digits);
         add_figure(figures, &count, "shadow", "in shadow", text);

@@ -50,7 +50,7 @@ void ev_format_error(char *text, size_t size, double metres, bool plus)
 {
     double mm = 1e3 * metres, magnitude = fabs(mm);
     if (magnitude < 5e-4) {
-        snprintf(text, size, magnitude > 0.0 ? "under 0.001 mm" : "0 mm");
+        snprintf(text, size, magnitude > 0.0 ? "< 1 \u00b5m" : "0 mm");
         return;
     }
     int decimals = magnitude >= 99.95 ? 0 : magnitude >= 4.95 ? 1 : magnitude >= 0.095 ? 2 : 3;

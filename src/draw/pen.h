@@ -7,6 +7,8 @@
 
 #include <stddef.h>
 
+#define EV_LEAST_SHARE 0.0005 /* of the power: less would be drawn as 0.0 % */
+
 typedef struct ev_pen {
     cairo_t *cairo;
     const ev_theme *theme;

@@ -31,7 +31,7 @@ static int list_entries(const ev_sheet *sheet, watts_entry entries[ENTRY_COUNT])
     };
     int count = 0;
     for (int i = 0; i < ENTRY_COUNT; ++i)
-        if (all[i].share > 0.0 || i == 0)
+        if (all[i].share >= EV_LEAST_SHARE || i == 0)
             entries[count++] = all[i];
     return count;
 }

@@ -53,7 +53,7 @@ static void lengths_and_errors_read_well(void **state)
     ev_format_error(text, sizeof text, 3.2e-5, false);
     assert_string_equal(text, "0.032 mm");
     ev_format_error(text, sizeof text, 1e-9, false);
-    assert_string_equal(text, "under 0.001 mm");
+    assert_string_equal(text, "< 1 \u00b5m");
 }
 
 static void steps_are_one_two_five(void **state)

@@ -19,7 +19,7 @@
 typedef struct ev_beam_source ev_beam_source;
 
 /* Coarse: expansion to -100 dB of the whole, for a beam that follows a dragged part; exact: -180 dB
- * (pattern tables, cubic between their entries: -120 dB). */
+ * (pattern tables, cubic between their entries: -108 dB). */
 typedef enum { EV_BEAM_COARSE, EV_BEAM_EXACT } ev_beam_quality;
 
 ev_beam_source *ev_beam_source_create(const ev_antenna *antenna, int feed, ev_beam_quality quality);

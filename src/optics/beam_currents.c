@@ -116,7 +116,7 @@ void ev_beam_currents_recipe(const ev_antenna *antenna, int feed, ev_beam_qualit
     light->base = path_at_centre(light);
     double k = antenna->wavenumber, rough = 2.0 * k * antenna->surface_rms;
     bool table = antenna->feeds[feed].pattern.kind == EV_PATTERN_TABLE;
-    double tolerance = quality == EV_BEAM_COARSE ? 1e-5 : table ? 1e-6 : 1e-9;
+    double tolerance = quality == EV_BEAM_COARSE ? 1e-5 : table ? 4e-6 : 1e-9;
     *recipe =
         (ev_beam_recipe){.sheet = {.wavenumber = k,
                                    .radius = antenna->radius,

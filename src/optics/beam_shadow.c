@@ -55,7 +55,8 @@ static void append(const obstacle *work, const ev_region_nodes *nodes, ev_shadow
 
 enum { PANEL = 256, SEED_CAPACITY = 8 * EV_SHADOW_BODY_CAPACITY + 64 };
 
-/* Nodes a radian: 0.31 by Gauss, a few to begin with (rings.c); uniform angles need one a radian. */
+/* Nodes a radian: 0.31 by Gauss, after a few to begin with (beam_rings.c); uniform angles need one
+ * a radian. */
 static void add_obstacle(const ev_shadows *shadows, int index, double phase,
                          ev_shadow_points *points)
 {

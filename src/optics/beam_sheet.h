@@ -36,7 +36,8 @@ enum { EV_MODE_ROWS = 12, EV_MODE_RADIAL_LIMIT = 512, EV_MODE_AROUND_LIMIT = 102
  * Sampled on Gauss radii x uniform angles; both are raised until the energy in the highest quarter
  * of the degrees, and of the orders, is below tolerance^2 of all. The expansion separates how fine
  * the LIGHTING is (some 40 x 64 samples for a well focused dish of any size) from how fine the
- * phase toward a direction is, which rings.h does with Bessel functions and no further rays. */
+ * phase toward a direction is, which beam_rings.h does with Bessel functions and no further rays.
+ */
 typedef struct ev_modes {
     double *coefficients; /* [m][row][degree] */
     int highest, degrees;

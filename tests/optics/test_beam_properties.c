@@ -209,6 +209,70 @@ static void test_same_bits(void **state)
     assert_memory_equal(one, two, sizeof one);
 }
 
+/* A feed that lights nothing, or only a sliver: told, not invented. */
+static void test_dark_feed(void **state)
+{
+    (void)state;
+    ev_design design = ev_test_dish(1.2, 0.5, 0.0, 3.0);
+    design.feeds[0].aim = EV_AIM_DIRECTION;
+    design.feeds[0].aim_direction = ev_vec3_make(0.0, 0.0, 1.0);
+    ev_antenna antenna = ev_test_antenna(design, 12e9);
+    ev_feed_budget budget;
+    ev_beam beam;
+    ev_budget_compute_feed(&antenna, 0, &budget);
+    assert_false(ev_beam_compute(&antenna, 0, &budget, EV_BEAM_EXACT, &beam));
+    assert_true(isnan(beam.gain_dbi) && isnan(beam.x) && isnan(beam.cross_polar_db));
+    design.feeds[0].aim_direction = ev_vec3_make(1.0, 0.0, 0.3);
+    antenna = ev_test_antenna(design, 12e9);
+    ev_budget_compute_feed(&antenna, 0, &budget);
+    assert_true(ev_beam_compute(&antenna, 0, &budget, EV_BEAM_EXACT, &beam));
+    assert_true(isfinite(beam.gain_dbi) && isfinite(beam.cross_polar_db));
+    ev_beam_source *source = ev_beam_source_create(&antenna, 0, EV_BEAM_EXACT);
+    ev_beam_field lost = ev_test_field(source, ev_vec3_make(NAN, 0.0, 1.0));
+    ev_beam_field behind = ev_test_field(source, ev_vec3_make(0.0, 0.0, -1.0));
+    assert_true(isnan(creal(lost.co)) && isnan(creal(lost.cross)));
+    assert_true(behind.co == 0.0 && behind.cross == 0.0);
+    ev_beam_source_destroy(source);
+}
+
+/* A table's phase: that of a feed out of focus by a wavelength, turned round, mends the very same
+ * feed. On a centred dish path over path in focus is a function of the angle off the axis. */
+static void test_phase_of_a_table(void **state)
+{
+    (void)state;
+    static ev_pattern_table table;
+    const double focal = 1.0, away = 0.02, k = 2.0 * EV_PI * 12e9 / EV_LIGHT_SPEED;
+    ev_antenna focused = ev_test_antenna(ev_test_dish(2.0, focal, 0.0, 2.0), 12e9);
+    table.count = 161;
+    table.has_phase = true;
+    for (int i = 0; i < table.count; i++) {
+        double theta = ev_test_rad(0.5 * i); /* seen from the feed, at `away` above the focus */
+        double c = cos(theta), s = sin(theta);
+        /* r from (0, 0, F + away): F + away - r c = r^2 s^2 / 4F */
+        double a = s * s / (4.0 * focal), root = sqrt(c * c + 4.0 * a * (focal + away));
+        double r = a > 1e-9 ? (root - c) / (2.0 * a) : (focal + away) / c;
+        double ideal = focal + r * r * s * s / (4.0 * focal);
+        table.theta[i] = theta;
+        table.e_db[i] = table.h_db[i] = 20.0 * log10(c);
+        table.phase[i] = -k * (r - ideal - away);
+    }
+    ev_pattern_table_prepare(&table);
+    ev_design design = ev_test_dish(2.0, focal, 0.0, 2.0);
+    design.feeds[0].shift.z = away;
+    ev_antenna blurred = ev_test_antenna(design, 12e9);
+    design.feeds[0].pattern = EV_PATTERN_TABLE;
+    design.feeds[0].table = &table;
+    ev_antenna mended = ev_test_antenna(design, 12e9);
+    double best = ev_test_beam(&focused).gain_dbi;
+    assert_true(best - ev_test_beam(&blurred).gain_dbi > 0.3);
+    ev_feed_budget budget;
+    ev_budget_compute_feed(&mended, 0, &budget);
+    assert_near(budget.efficiency.phase, 1.0, 1e-6);
+    ev_beam beam = ev_test_beam(&mended);
+    assert_near(beam.gain_dbi, budget.gain_dbi, 0.005);
+    assert_near(beam.gain_dbi, best, 0.05); /* it lights a little less of the dish from there */
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -219,6 +283,8 @@ int main(void)
         cmocka_unit_test(test_halving_changes_nothing),
         cmocka_unit_test(test_thousand_wavelengths),
         cmocka_unit_test(test_same_bits),
+        cmocka_unit_test(test_dark_feed),
+        cmocka_unit_test(test_phase_of_a_table),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

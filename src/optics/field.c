@@ -149,16 +149,16 @@ static void newton_step(const ev_antenna *antenna, const integral *at, double *d
     *dv = size > 0.0 ? step * gv / size : 0.0;
 }
 
+/* Newton converges by squares: after a step of 1e-5 of a beamwidth what is left is rounding. */
 static ev_vec3 climb(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 from, double *height)
 {
     ev_vec3 s = from;
     integral at = integrate(antenna, nodes, s);
+    double beam = antenna->wavelength / antenna->radius, moved = INFINITY;
     *height = cabs(at.value);
-    for (int pass = 0; pass < 30 && *height > 0.0; pass++) {
+    for (int pass = 0; pass < 30 && *height > 0.0 && moved > 1e-5 * beam; pass++) {
         double du, dv, part = 1.0;
         newton_step(antenna, &at, &du, &dv);
-        if (hypot(du, dv) < 1e-9 * antenna->wavelength / antenna->radius)
-            break;
         for (; part > 1e-3; part *= 0.5) {
             ev_vec3 next = direction_of(s.x + part * du, s.y + part * dv);
             integral there = integrate(antenna, nodes, next);
@@ -171,18 +171,28 @@ static ev_vec3 climb(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 f
         }
         if (part <= 1e-3)
             break;
+        moved = part * hypot(du, dv);
     }
     return s;
 }
 
+static double whole_amplitude(const ev_nodes *nodes)
+{
+    double sum = 0.0;
+    for (int i = 0; i < nodes->count; i++)
+        sum += nodes->items[i].weight * sqrt(nodes->items[i].density);
+    return sum;
+}
+
+/* A lobe that holds most of what the aperture can give leaves too little for a higher one. */
 ev_vec3 ev_aperture_peak(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 wanted)
 {
     ev_plane plane = ev_fit_plane(antenna, nodes, wanted, EV_WEIGHT_AMPLITUDE);
-    double by_tilt, by_wish;
+    double by_tilt, by_wish, most = whole_amplitude(nodes);
     ev_vec3 tilted = direction_of(wanted.x + plane.b, wanted.y + plane.c);
     tilted = climb(antenna, nodes, tilted, &by_tilt);
-    if (plane.rms < 0.05 * antenna->wavelength)
-        return tilted; /* one lobe, whichever way it is climbed */
+    if (by_tilt * by_tilt > 0.6 * most * most)
+        return tilted;
     ev_vec3 wished = climb(antenna, nodes, wanted, &by_wish);
     return by_wish > by_tilt * (1.0 + 1e-9) ? wished : tilted;
 }

@@ -27,6 +27,10 @@ static ev_node evaluate(const ev_antenna *antenna, int feed, double x, double y,
                      .direction = sample.direction};
 }
 
+/* Below this a second thread costs more to wake than it saves, and where the machine is busy a
+ * whole time slice. */
+enum { WORTH_THREADS = 20000 };
+
 static void allocate(ev_nodes *nodes, int count)
 {
     nodes->count = count;
@@ -47,7 +51,7 @@ void ev_nodes_whole(const ev_antenna *antenna, int feed, ev_order order, ev_node
     ev_gauss_make(order.radial, &gauss);
     allocate(nodes, gauss.count * order.around);
     double inner = antenna->hole_radius, span = antenna->radius - inner;
-#pragma omp parallel for schedule(static)
+#pragma omp parallel for schedule(static) if (nodes->count > WORTH_THREADS)
     for (int i = 0; i < nodes->count; i++) {
         double phi = 2.0 * EV_PI * (i / gauss.count) / order.around;
         double r = inner + span * gauss.x[i % gauss.count];
@@ -60,7 +64,6 @@ void ev_nodes_whole(const ev_antenna *antenna, int feed, ev_order order, ev_node
 void ev_nodes_circle(const ev_antenna *antenna, int feed, double radius, int count, ev_nodes *nodes)
 {
     allocate(nodes, count);
-#pragma omp parallel for schedule(static)
     for (int i = 0; i < count; i++) {
         double phi = 2.0 * EV_PI * i / count;
         nodes->items[i] =
@@ -169,7 +172,7 @@ static void append(const sweep *over, const ev_region_nodes *bare, double scale,
 
 static void evaluate_all(const ev_cut *cut, ev_nodes *nodes)
 {
-#pragma omp parallel for schedule(static)
+#pragma omp parallel for schedule(static) if (nodes->count > WORTH_THREADS)
     for (int i = 0; i < nodes->count; i++) {
         ev_node bare = nodes->items[i], *node = &nodes->items[i];
         *node = evaluate(cut->antenna, cut->feed, bare.point.x, bare.point.y, bare.weight);

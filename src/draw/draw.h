@@ -7,9 +7,11 @@
 #pragma once
 
 #include "optics/antenna.h"
+#include "optics/beam_limit.h"
 #include "optics/budget.h"
 #include "optics/design.h"
 #include "optics/trace.h"
+#include "study/beam_curve.h"
 #include "study/loss_map.h"
 #include "study/verdict.h"
 
@@ -116,7 +118,12 @@ typedef struct ev_sheet {
     ev_part part;              /* shown in the Detail */
     ev_part_axis detail_axis[2];
     ev_stage_mode stage;
-    ev_plate plate; /* the one shown where there is room for one */
+    const ev_beam_curve *beams[EV_FEED_CAPACITY]; /* of each feed, selected one first drawn; NULL:
+                                                   not computed */
+    const ev_beam_curve *kept_beam;               /* of the selected feed; NULL */
+    const ev_limit *limit;                        /* drawn over the Beam plate; NULL */
+    const ev_gain_curve *gain_curve;              /* Cut plate; NULL: not computed */
+    ev_plate plate;                               /* the one shown where there is room for one */
     bool dark;
     bool paper; /* nothing to press: no button, tabs or marks of the pointer */
     bool unsaved, can_undo, can_redo, detail, grabbed, stale;

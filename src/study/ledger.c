@@ -8,7 +8,7 @@ static bool is_circular(ev_polarization polarization)
 
 static double decibels(double factor)
 {
-    return 10.0 * log10(fmax(factor, 1e-30));
+    return isnan(factor) ? NAN : 10.0 * log10(fmax(factor, 1e-30));
 }
 
 void ev_ledger_list(const ev_antenna *antenna, const ev_feed_budget *budget, int feed,

@@ -32,6 +32,9 @@ typedef struct ev_beam_nodes {
     int edge_points;    /* points of currents that end within the rim */
     int shadow_points;
     double residual; /* of the expansion, amplitude relative to the whole; 0 with an edge */
+    /* The expansion reached the accuracy asked for; with an edge: no direction asked had more than
+     * 500 rad from centre to rim, beyond which the points around an edge are too few. */
+    bool converged;
 } ev_beam_nodes;
 
 ev_beam_nodes ev_beam_source_nodes(const ev_beam_source *source);
@@ -123,6 +126,7 @@ typedef enum {
     EV_BEAM_NOTE_SHADOW_LARGE, /* share of the captured power in shadows, over 0.1 */
     EV_BEAM_NOTE_STRUT_THIN,   /* strut width / lambda under 1: scatters more than it shades */
     EV_BEAM_NOTE_WIDE_ANGLE,   /* asked beyond this angle (rad) the feed's spill is missing */
+    EV_BEAM_NOTE_UNCONVERGED,  /* residual of the expansion, where nodes.converged is false */
     EV_BEAM_NOTE_LEDGER_GAP,   /* far field and ledger differ by this, dB, over 0.1 */
     EV_BEAM_NOTE_COUNT,
 } ev_beam_note_id;

@@ -73,6 +73,8 @@ int ev_beam_notes(const ev_antenna *antenna, int feed, const ev_feed_budget *bud
     add_if(&found, budget->shadow_share > 0.1, EV_BEAM_NOTE_SHADOW_LARGE, budget->shadow_share);
     double strut = thinnest_strut(antenna);
     add_if(&found, strut < 1.0, EV_BEAM_NOTE_STRUT_THIN, strut);
+    bool poor = beam && !beam->nodes.converged;
+    add_if(&found, poor, EV_BEAM_NOTE_UNCONVERGED, poor ? beam->nodes.residual : 0.0);
     double gap = beam ? fabs(beam->ledger_gap_db) : 0.0;
     add_if(&found, gap > 0.1, EV_BEAM_NOTE_LEDGER_GAP, gap);
     double spill = spill_angle(antenna, feed);

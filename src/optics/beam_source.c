@@ -11,7 +11,7 @@
 #include <string.h>
 
 /* Points are made for phases up to POINT_PHASE 2^level. */
-enum { POINT_LEVELS = 10, POINT_PHASE = 32 };
+enum { POINT_LEVELS = 10, POINT_PHASE = 32, EDGE_LEVELS = 4 };
 
 struct ev_beam_source {
     ev_sheet sheet, shadow_sheet;
@@ -106,12 +106,15 @@ ev_beam_nodes ev_beam_source_nodes(const ev_beam_source *source)
     ev_beam_nodes nodes = {.radial = source->edged ? 0 : source->modes.radial,
                            .around = source->edged ? 0 : source->modes.around,
                            .residual = source->edged ? 0.0 : source->modes.residual};
+    nodes.converged = nodes.residual <= source->sheet.tolerance;
     for (int i = 0; i < EV_RINGS_STEPS; i++)
         if (source->rings[i])
             nodes.rings = ev_rings_count(i);
     for (int i = 0; i < POINT_LEVELS; i++) {
-        if (source->edge[i])
+        if (source->edge[i]) {
             nodes.edge_points = ev_points_count(source->edge[i]);
+            nodes.converged = i <= EDGE_LEVELS;
+        }
         if (source->shadow[i])
             nodes.shadow_points = ev_points_count(source->shadow[i]);
     }

@@ -216,7 +216,8 @@ static void test_lighting_with_an_edge(void **state)
         brute_fields(&from, 0.14, 0.0, 0.3, 0.0, ev_test_rad(theta), ev_test_rad(20.0), &x, &y);
         assert_near(cabs(got.co - x) / peak, 0.0, 3e-5);
     }
-    assert_true(ev_beam_source_nodes(beam).edge_points > 0);
+    ev_beam_nodes nodes = ev_beam_source_nodes(beam);
+    assert_true(nodes.edge_points > 0 && nodes.converged);
     ev_beam_source_destroy(beam);
 }
 

@@ -190,7 +190,15 @@ static void test_notes(void **state)
     ev_antenna good = ev_test_antenna(ev_test_dish(3.0, 1.2, 0.0, 2.5), 12e9);
     ev_budget_compute_feed(&good, 0, &budget);
     ev_beam beam = ev_test_beam(&good);
+    assert_true(beam.nodes.converged);
     assert_int_equal(ev_beam_notes(&good, 0, &budget, &beam, notes), 0);
+    beam.nodes.converged = false;
+    beam.nodes.residual = 1e-3;
+    beam.ledger_gap_db = -0.2;
+    assert_int_equal(ev_beam_notes(&good, 0, &budget, &beam, notes), 2);
+    assert_int_equal(notes[0].id, EV_BEAM_NOTE_UNCONVERGED);
+    assert_near(notes[0].value, 1e-3, 1e-15);
+    assert_near(notes[1].value, 0.2, 1e-15);
     ev_design design = ev_test_cassegrain(12.0);
     design.strut_count = 1;
     design.struts[0] = ev_default_strut();

@@ -271,9 +271,14 @@ const ev_act *ev_act_of_key(SDL_Keycode key, Uint16 modifiers)
     return NULL;
 }
 
+bool ev_act_possible(const ev_view *view, const ev_act *command)
+{
+    return is_open(view) || command->enabled == always;
+}
+
 void ev_act_run(ev_view *view, const ev_act *command)
 {
-    if (is_open(view) || command->enabled == always) {
+    if (ev_act_possible(view, command)) {
         view->nudged[0] = '\0';
         command->run(view);
         view->dirty = true;

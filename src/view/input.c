@@ -155,7 +155,7 @@ static void on_key(ev_view *view, const ev_input *input)
     if (!command || !view->asked || strcmp(command->name, view->asked) != 0) {
         view->asked = NULL;
     }
-    if (command) {
+    if (command && ev_act_possible(view, command)) {
         ev_act_run(view, command);
     } else if (!open) {
         gallery_key(view, input);

@@ -157,13 +157,15 @@ static void step_history(ev_model *model, const ev_design *design, const char *v
 void ev_model_undo(ev_model *model)
 {
     const char *words = "";
-    step_history(model, ev_history_undo(model->history, &words), "undo", words);
+    const ev_design *design = ev_history_undo(model->history, &words);
+    step_history(model, design, "undo", words);
 }
 
 void ev_model_redo(ev_model *model)
 {
     const char *words = "";
-    step_history(model, ev_history_redo(model->history, &words), "do again", words);
+    const ev_design *design = ev_history_redo(model->history, &words);
+    step_history(model, design, "do again", words);
 }
 
 void ev_model_keep(ev_model *model)

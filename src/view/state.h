@@ -151,6 +151,8 @@ typedef struct ev_act {
 const ev_act *ev_act_find(const char *name);
 /* The command of a key, NULL when it has none. */
 const ev_act *ev_act_of_key(SDL_Keycode key, Uint16 modifiers);
+/* Most need an open scene. */
+bool ev_act_possible(const ev_view *view, const ev_act *command);
 void ev_act_run(ev_view *view, const ev_act *command);
 int ev_action_list(const ev_view *view, ev_action actions[EV_ACTION_CAPACITY]);
 

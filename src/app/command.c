@@ -21,6 +21,8 @@ static const ev_command commands[] = {
      "--feed --grid", 1, 1, ev_command_aperture},
     {"picture", "SCENE OUT", "the page as OUT.png, OUT.svg or OUT.pdf",
      "--feed --size --scale --dark", 2, 2, ev_command_picture},
+    {"compare", "SCENE SCENE", "two budgets side by side and their difference", "--json", 2, 2,
+     ev_command_compare},
     {"explain", "[NAME]", "what a parameter means, its unit, range and default", "", 0, 1,
      ev_command_explain},
 };

@@ -46,6 +46,7 @@ int ev_command_beam(const ev_options *options);
 int ev_command_rays(const ev_options *options);
 int ev_command_aperture(const ev_options *options);
 int ev_command_picture(const ev_options *options);
+int ev_command_compare(const ev_options *options);
 int ev_command_explain(const ev_options *options);
 
 /* The table, for the help text. */

@@ -28,3 +28,7 @@ void ev_report_json(FILE *stream, const ev_report *reports, int count, bool as_l
 void ev_report_csv(FILE *stream, const ev_report *reports, int count);
 
 void ev_report_text(FILE *stream, const ev_report *report);
+
+/* The first feeds of two reports side by side with second - first. */
+void ev_report_compare_text(FILE *stream, const ev_report *a, const ev_report *b);
+void ev_report_compare_json(FILE *stream, const ev_report *a, const ev_report *b);

@@ -14,7 +14,7 @@ static void print_line(FILE *stream, const char *label, double a, double b, int 
         if (isnan(values[i]))
             fprintf(stream, " %12s", "-");
         else
-            fprintf(stream, i == 2 ? " %+12.*f" : " %12.*f", digits, shown);
+            fprintf(stream, i == 2 && shown != 0.0 ? " %+12.*f" : " %12.*f", digits, shown);
     }
     fputc('\n', stream);
 }

@@ -7,8 +7,10 @@
 const char *ev_beam_note_word(ev_beam_note_id id)
 {
     static const char *const words[EV_BEAM_NOTE_COUNT] = {
-        "dish_small", "sub_small",  "feed_near", "shadow_large",
-        "strut_thin", "wide_angle", "ledger_gap"};
+        [EV_BEAM_NOTE_DISH_SMALL] = "dish_small",   [EV_BEAM_NOTE_SUB_SMALL] = "sub_small",
+        [EV_BEAM_NOTE_FEED_NEAR] = "feed_near",     [EV_BEAM_NOTE_SHADOW_LARGE] = "shadow_large",
+        [EV_BEAM_NOTE_STRUT_THIN] = "strut_thin",   [EV_BEAM_NOTE_WIDE_ANGLE] = "wide_angle",
+        [EV_BEAM_NOTE_UNCONVERGED] = "unconverged", [EV_BEAM_NOTE_LEDGER_GAP] = "ledger_gap"};
     return words[id];
 }
 
@@ -63,6 +65,12 @@ void ev_beam_note_text(const ev_beam_note *note, const ev_beam *beam, char *text
                  "beyond %.0f degrees from the beam what the feed radiates past the dish "
                  "adds to these levels",
                  v * 180.0 / EV_PI);
+        return;
+    case EV_BEAM_NOTE_UNCONVERGED:
+        snprintf(text, size,
+                 "the sum over the currents is settled to %.1f dB of the whole only; low "
+                 "levels are not to be trusted",
+                 20.0 * log10(fmax(v, 1e-15)));
         return;
     case EV_BEAM_NOTE_LEDGER_GAP:
         gap_text(v, beam, text, size);

@@ -106,6 +106,8 @@ static void add_cut(const ev_options *options, work *all, double phi, const ev_l
         if (!(all->samples[index][k] = calloc((size_t)count, sizeof(double))))
             abort();
     ev_beam_cut_compute(all->source, &at->cut, all->samples[index][0], all->samples[index][1]);
+    ev_beam_cut_add_pedestal(&all->loaded.antenna, &all->budget, all->beam.peak, &at->cut,
+                             all->samples[index][0]);
     at->co_dbi = all->samples[index][0];
     at->cross_dbi = all->samples[index][1];
     if (!limit)

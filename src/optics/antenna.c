@@ -158,6 +158,7 @@ void ev_antenna_build(const ev_design *design, double frequency, ev_antenna *ant
                             .radius = 0.5 * main->diameter,
                             .hole_radius = 0.5 * main->hole,
                             .surface_rms = main->surface_rms,
+                            .surface_correlation = main->surface_correlation,
                             .ohmic = pow(10.0, -0.1 * design->ohmic),
                             .mismatch = pow(10.0, -0.1 * design->mismatch),
                             .feed_count = design->feed_count,

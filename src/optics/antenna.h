@@ -64,7 +64,7 @@ typedef struct ev_layout {
 typedef struct ev_antenna {
     double frequency, wavelength, wavenumber;
     double focal_length, offset, radius, hole_radius; /* main; radius of the projected aperture */
-    double surface_rms;
+    double surface_rms, surface_correlation;
     double ohmic, mismatch; /* as power factors, <= 1 */
     ev_conic main;
     bool dual;

@@ -108,6 +108,11 @@ void ev_beam_cut_compute(ev_beam_source *source, const ev_beam_cut *cut, double 
 /* Samples enough to see every lobe of a cut: ten a lobe width. */
 int ev_beam_cut_samples(const ev_antenna *antenna, double from, double to);
 
+/* Adds in power what a rough surface scatters under the beam (beam_pedestal.h), about `peak`.
+ * Nothing without a correlation length. */
+void ev_beam_cut_add_pedestal(const ev_antenna *antenna, const ev_feed_budget *budget, ev_vec3 peak,
+                              const ev_beam_cut *cut, double *co_dbi);
+
 /* A map over direction cosines: `side` x `side` samples of a square about (x, y), row 0 at the
  * highest y, column 0 at the lowest x. NaN outside the visible circle. cross may be NULL. */
 typedef struct ev_beam_map {

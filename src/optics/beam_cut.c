@@ -1,6 +1,7 @@
 /* Cuts and maps: directions laid out, fields asked for, levels written. Called by the commands and
  * the Beam plate. */
 #include "optics/beam.h"
+#include "optics/beam_pedestal.h"
 
 #include <stdlib.h>
 
@@ -56,6 +57,21 @@ void ev_beam_cut_compute(ev_beam_source *source, const ev_beam_cut *cut, double 
     }
     free(directions);
     free(fields);
+}
+
+void ev_beam_cut_add_pedestal(const ev_antenna *antenna, const ev_feed_budget *budget, ev_vec3 peak,
+                              const ev_beam_cut *cut, double *co_dbi)
+{
+    const double *power = budget->power;
+    ev_pedestal pedestal = {.wavelength = antenna->wavelength,
+                            .rms = antenna->surface_rms,
+                            .correlation = antenna->surface_correlation,
+                            .power = power[EV_FATE_APERTURE] * antenna->ohmic * antenna->mismatch};
+    if (!(pedestal.rms > 0.0 && pedestal.correlation > 0.0))
+        return;
+    for (int i = 0; i < cut->count; i++)
+        co_dbi[i] = ev_pedestal_add_dbi(
+            &pedestal, ev_vec3_angle(peak, ev_beam_cut_direction(cut, i)), co_dbi[i]);
 }
 
 int ev_beam_cut_samples(const ev_antenna *antenna, double from, double to)

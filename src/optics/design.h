@@ -53,8 +53,9 @@ typedef struct ev_main_design {
     double offset;    /* m, aperture centre from the axis, along +x */
     double clearance; /* m, lower rim from the axis: offset - diameter / 2 */
     ev_offset_choice offset_given;
-    double hole;        /* m, diameter of a central hole about the aperture centre */
-    double surface_rms; /* m, half-path rms error of all surfaces together */
+    double hole;                /* m, diameter of a central hole about the aperture centre */
+    double surface_rms;         /* m, half-path rms error of all surfaces together */
+    double surface_correlation; /* m, its correlation length; 0: unknown, no pedestal */
 } ev_main_design;
 
 typedef struct ev_sub_design {

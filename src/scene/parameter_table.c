@@ -67,6 +67,9 @@ const ev_parameter ev_parameter_table[] = {
      .example = "0.4 m", .meaning = "diameter of a hole about the aperture centre"},
     {"main.surface_rms", "Surface rms", DESIGN(main.surface_rms), QUANTITY(LENGTH, 0.0, 0.1, 0.0),
      .example = "0.3 mm", .meaning = "half-path rms error of all surfaces together"},
+    {"main.surface_correlation", "Correlation length", DESIGN(main.surface_correlation),
+     QUANTITY(LENGTH, 0.0, 1e3, 0.0), .example = "150 mm",
+     .meaning = "how far surface errors hang together; adds their scatter to the beam's cuts"},
 
     {"sub.shape", "Subreflector shape", SUB(shape), CHOICE(shape_words, 1, 0), .required = true,
      .example = "hyperboloid", .meaning = "hyperboloid (Cassegrain) or ellipsoid (Gregorian)"},

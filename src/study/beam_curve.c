@@ -36,6 +36,7 @@ void ev_beam_curve_compute(const ev_antenna *antenna, int feed, double phi, doub
     ev_budget_compute_feed(antenna, feed, &budget);
     double gain;
     ev_vec3 peak = ev_beam_climb(source, budget.peak, false, &gain);
+    ev_beam_cut_add_pedestal(antenna, &budget, peak, &cut, curve->co_dbi);
     curve->peak_angle = atan2(peak.x * cos(phi) + peak.y * sin(phi), peak.z);
     curve->peak_dbi = 10.0 * log10(fmax(gain, 1e-30));
     for (int i = 0; i < EV_BEAM_CURVE_SAMPLES; i++)

@@ -89,13 +89,27 @@ static void press_stage(ev_view *view, const ev_input *input)
     view->drag.pan_y = view->pan_y;
 }
 
+/* Where parts lie over each other, the one in hand comes first. */
+static const ev_box *find_handle(const ev_view *view, const ev_input *input)
+{
+    const ev_box *hit =
+        ev_layers_hit(&view->layers, view->model.scene == NULL, input->x, input->y, EV_BOX_HANDLE);
+    char name[32];
+    if (hit && starts_with(hit->name, "part.")) {
+        ev_model_part_name(&view->model, name);
+        const ev_box *own = ev_layers_find(&view->layers, false, name);
+        return own && is_inside(own->rect, input->x, input->y) ? own : hit;
+    }
+    return hit;
+}
+
 void ev_drag_begin(ev_view *view, const ev_input *input)
 {
     bool gallery = view->model.scene == NULL;
     view->drag = (ev_drag){.x = input->x, .y = input->y, .field = -1};
     const ev_box *handle = NULL, *button = NULL, *field = NULL;
     if (input->button == SDL_BUTTON_LEFT) {
-        handle = ev_layers_hit(&view->layers, gallery, input->x, input->y, EV_BOX_HANDLE);
+        handle = find_handle(view, input);
         button = ev_layers_hit(&view->layers, gallery, input->x, input->y, EV_BOX_BUTTON);
         field = ev_layers_hit(&view->layers, gallery, input->x, input->y, EV_BOX_FIELD);
     }

@@ -179,12 +179,12 @@ static void place_parts(const ev_view *view, ev_layers_input *input,
                         ev_box parts[EV_FEED_CAPACITY + 1])
 {
     const ev_antenna *antenna = &view->model.study->antenna;
+    char name[32];
     input->parts = parts;
     input->part_count = ev_space_parts(antenna, &view->page, &view->camera, parts);
+    ev_model_part_name(&view->model, name);
     for (int i = 0; i < input->part_count; ++i) {
-        char name[32];
-        snprintf(name, sizeof name, "part.feed.%d", view->model.feed);
-        if (strcmp(parts[i].name, view->model.part == EV_PART_SUB ? "part.sub" : name) == 0) {
+        if (strcmp(parts[i].name, name) == 0) {
             input->part_x = parts[i].rect.x + 0.5 * parts[i].rect.width;
             input->part_y = parts[i].rect.y + 0.5 * parts[i].rect.height;
         }

@@ -86,3 +86,5 @@ ev_design ev_model_moved(const ev_model *model, const ev_design *from, ev_part p
 /* "feed out", "subreflector up": the words of a move. */
 void ev_model_move_words(const ev_model *model, ev_part part, ev_part_axis axis,
                          char words[EV_WORDS_CAPACITY]);
+/* The name of the part in hand among the hot boxes: "part.feed.0", "part.sub". */
+void ev_model_part_name(const ev_model *model, char name[32]);

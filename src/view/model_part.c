@@ -67,6 +67,15 @@ void ev_model_move_words(const ev_model *model, ev_part part, ev_part_axis axis,
     snprintf(words, EV_WORDS_CAPACITY, "%s %s", name, ev_axis_word(axis));
 }
 
+void ev_model_part_name(const ev_model *model, char name[32])
+{
+    if (model->part == EV_PART_SUB) {
+        snprintf(name, 32, "part.sub");
+    } else {
+        snprintf(name, 32, "part.feed.%d", model->feed);
+    }
+}
+
 void ev_model_obey(ev_model *model)
 {
     const ev_verdict *verdict = &model->verdict;

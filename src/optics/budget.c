@@ -230,7 +230,7 @@ static void sum_gain(const account *sum, ev_feed_budget *out)
     const ev_antenna *antenna = sum->antenna;
     ev_efficiency *eta = &out->efficiency;
     eta->spillover_sub = 1.0 - out->power[EV_FATE_PAST_SUB];
-    eta->spillover = eta->spillover_sub - out->power[EV_FATE_PAST_MAIN];
+    eta->spillover = fmax(eta->spillover_sub - out->power[EV_FATE_PAST_MAIN], 0.0);
     eta->spillover_main = ratio_of(eta->spillover, eta->spillover_sub);
     eta->surface = exp(-square(2.0 * antenna->wavenumber * antenna->surface_rms));
     eta->ohmic = antenna->ohmic;

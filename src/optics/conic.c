@@ -70,8 +70,10 @@ int ev_conic_intersect(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction,
     double c = conic->curvature, e2 = conic->eccentricity * conic->eccentricity;
     ev_vec3 o = ev_vec3_sub(origin, conic->vertex);
     double os = ev_vec3_dot(o, conic->axis), ds = ev_vec3_dot(direction, conic->axis);
-    /* a t^2 + 2 b t + k = 0; a vanishes for a ray along the axis of a paraboloid */
-    double a = c * (1.0 - e2 * ds * ds);
+    /* a t^2 + 2 b t + k = 0; a vanishes for a ray along the axis of a paraboloid, and has to do so
+     * from above: a rounded 1 - ds^2 below 0 would put the far crossing at the wrong end */
+    ev_vec3 across = ev_vec3_along(direction, -ds, conic->axis);
+    double a = c * (ev_vec3_dot(across, across) + (1.0 - e2) * ds * ds);
     double b = c * (ev_vec3_dot(o, direction) - e2 * os * ds) - ds;
     double k = c * (ev_vec3_dot(o, o) - e2 * os * os) - 2.0 * os;
     double disc = b * b - a * k;

@@ -139,7 +139,7 @@ static int slice(const void *context, double phi, ev_shadow_interval *intervals)
         return ev_shadow_slice(shadows, over->obstacle, phi, intervals);
     ev_shadow_interval bare[EV_SLICE_CAPACITY];
     int bare_count = ev_shadow_slice(shadows, over->obstacle, phi, bare), count = 0;
-    for (int i = 0; i < bare_count && count + over->margin.samples <= EV_SLICE_CAPACITY; i++)
+    for (int i = 0; i < bare_count && count + 2 * over->margin.samples <= EV_SLICE_CAPACITY; i++)
         count += ev_clip_by_margin(&over->margin, phi, bare[i], intervals + count);
     return count;
 }

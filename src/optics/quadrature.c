@@ -228,34 +228,69 @@ static double find_zero(const bracket *line, double a, double fa, double b, doub
     return b;
 }
 
-enum { ID_EDGE = 1 << 20 };
+enum { ID_EDGE = 1 << 20, LOOK_CAPACITY = 64 };
+
+/* The margin at some places of a line, rising. */
+typedef struct looks {
+    int count;
+    double at[LOOK_CAPACITY], value[LOOK_CAPACITY];
+} looks;
+
+/* Between three looks of one sign the margin may reach over zero and back: where the parabola
+ * through them comes near zero, looks there too. */
+static void look_between(const bracket *line, looks *seen)
+{
+    for (int i = 1; i + 1 < seen->count && seen->count < LOOK_CAPACITY; i++) {
+        double *x = &seen->at[i - 1], *f = &seen->value[i - 1];
+        double h0 = x[1] - x[0], h1 = x[2] - x[1], d0 = (f[1] - f[0]) / h0, d1 = (f[2] - f[1]) / h1;
+        double bend = (d1 - d0) / (h0 + h1), slope = (h1 * d0 + h0 * d1) / (h0 + h1);
+        double top = x[1] - 0.5 * slope / bend, height = f[1] - 0.25 * slope * slope / bend;
+        bool one_sign = (f[0] > 0.0) == (f[1] > 0.0) && (f[1] > 0.0) == (f[2] > 0.0);
+        double sign = f[1] > 0.0 ? 1.0 : -1.0, size = fmax(fabs(f[0]), fabs(f[2]));
+        if (!one_sign || !(top > x[0] && top < x[2]) || sign * height > 0.1 * size || top == x[1])
+            continue;
+        int which, to = top < x[1] ? i : i + 1;
+        double value = margin_at(line, top, &which);
+        if ((value > 0.0) == (f[1] > 0.0))
+            continue;
+        for (int k = seen->count++; k > to; k--) {
+            seen->at[k] = seen->at[k - 1];
+            seen->value[k] = seen->value[k - 1];
+        }
+        seen->at[to] = top;
+        seen->value[to] = value;
+        i++;
+    }
+}
 
 int ev_clip_by_margin(const ev_margin *margin, double phi, ev_shadow_interval interval,
                       ev_shadow_interval *out)
 {
     bracket line = {margin, false, phi};
-    double span = interval.to - interval.from, last_r = interval.from;
+    looks seen = {.count = margin->samples};
+    double span = interval.to - interval.from;
     int which, count = 0;
-    double last = margin_at(&line, interval.from + 1e-12 * span, &which);
-    ev_shadow_interval open = interval;
-    for (int i = 1; i < margin->samples; i++) {
-        double r = interval.from + span * i / (margin->samples - 1);
-        double now = margin_at(&line, r, &which);
-        if ((now > 0.0) != (last > 0.0)) {
-            double edge = find_zero(&line, last_r, last, r, now, &which);
-            if (last > 0.0) {
-                open.to = edge;
-                open.to_id = ID_EDGE + which;
-                out[count++] = open;
-            }
-            open = interval;
-            open.from = edge;
-            open.from_id = ID_EDGE + which;
-        }
-        last_r = r;
-        last = now;
+    for (int i = 0; i < seen.count; i++) {
+        seen.at[i] = interval.from + span * (i ? (double)i / (seen.count - 1) : 1e-12);
+        seen.value[i] = margin_at(&line, seen.at[i], &which);
     }
-    if (last > 0.0)
+    look_between(&line, &seen);
+    ev_shadow_interval open = interval;
+    for (int i = 1; i < seen.count; i++) {
+        double last = seen.value[i - 1], now = seen.value[i];
+        if ((now > 0.0) == (last > 0.0))
+            continue;
+        double edge = find_zero(&line, seen.at[i - 1], last, seen.at[i], now, &which);
+        if (last > 0.0) {
+            open.to = edge;
+            open.to_id = ID_EDGE + which;
+            out[count++] = open;
+        }
+        open = interval;
+        open.from = edge;
+        open.from_id = ID_EDGE + which;
+    }
+    if (seen.value[seen.count - 1] > 0.0)
         out[count++] = open;
     return count;
 }

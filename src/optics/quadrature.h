@@ -50,11 +50,11 @@ void ev_region_integrate(const ev_region *region, int radial, int around, ev_reg
 typedef struct ev_margin {
     double (*value)(const void *context, double phi, double r, int *which);
     const void *context;
-    int samples; /* looks along an interval, ends included; at least 2 */
+    int samples; /* looks along an interval, ends included; 3 to 32 */
 } ev_margin;
 
 /* The parts of an interval at phi where the margin is positive. Writes at most
- * margin->samples of them and returns their number. */
+ * 2 margin->samples of them and returns their number. */
 int ev_clip_by_margin(const ev_margin *margin, double phi, ev_shadow_interval interval,
                       ev_shadow_interval *out);
 

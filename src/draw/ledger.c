@@ -5,8 +5,12 @@
 
 #include <math.h>
 #include <stdio.h>
+#include <string.h>
 
-enum { ROW_COUNT = EV_LEDGER_ROW_COUNT, ROW_PATH = 3, ROW_SHADOWS = 6 };
+enum { ROW_COUNT = EV_LEDGER_ROW_COUNT };
+
+/* How a row is marked: as the rays it is about, as the path error's colours, or not at all. */
+typedef enum { MARK_NONE, MARK_RAYS, MARK_PATH } row_mark;
 
 typedef struct ledger_frame {
     double left, right;         /* of the text */
@@ -93,41 +97,42 @@ static void draw_path_swatch(ev_pen *pen, ev_rect rect)
     cairo_pattern_destroy(pattern);
 }
 
-static void draw_swatch(ev_pen *pen, int row, double x, double y)
+static row_mark mark_of(const ev_ledger_row *row, ev_fate *fate)
 {
-    switch (row) {
-    case 0:
-        ev_pen_fate_sample(pen, EV_FATE_PAST_SUB, x, y, 20.0);
-        break;
-    case 1:
-        ev_pen_fate_sample(pen, EV_FATE_PAST_MAIN, x, y, 20.0);
-        break;
-    case ROW_PATH:
-        draw_path_swatch(pen, (ev_rect){x, y - 3.5, 20.0, 7.0});
-        break;
-    case ROW_SHADOWS:
-        ev_pen_fate_sample(pen, EV_FATE_SHADOW_SUB, x, y, 19.0);
-        break;
-    default:
-        ev_pen_line(pen, x + 8.0, y, x + 12.0, y, pen->theme->third, 1.2, 1.0);
-    }
+    *fate = strcmp(row->id, ev_watts_of(EV_FATE_PAST_SUB).id) == 0    ? EV_FATE_PAST_SUB
+            : strcmp(row->id, ev_watts_of(EV_FATE_PAST_MAIN).id) == 0 ? EV_FATE_PAST_MAIN
+            : strcmp(row->id, "blockage") == 0                        ? EV_FATE_SHADOW_SUB
+                                                                      : EV_FATE_COUNT;
+    return *fate != EV_FATE_COUNT          ? MARK_RAYS
+           : strcmp(row->id, "phase") == 0 ? MARK_PATH
+                                           : MARK_NONE;
 }
 
-static void draw_step(ev_pen *pen, int row, ev_rect bar)
+static void draw_swatch(ev_pen *pen, const ev_ledger_row *row, double x, double y)
+{
+    ev_fate fate;
+    row_mark mark = mark_of(row, &fate);
+    if (mark == MARK_RAYS)
+        ev_pen_fate_sample(pen, fate, x, y, 20.0);
+    else if (mark == MARK_PATH)
+        draw_path_swatch(pen, (ev_rect){x, y - 3.5, 20.0, 7.0});
+    else
+        ev_pen_line(pen, x + 8.0, y, x + 12.0, y, pen->theme->third, 1.2, 1.0);
+}
+
+static void draw_step(ev_pen *pen, const ev_ledger_row *row, ev_rect bar)
 {
     const ev_theme *theme = pen->theme;
-    if (row == ROW_PATH) {
+    ev_fate fate;
+    row_mark mark = mark_of(row, &fate);
+    if (mark == MARK_PATH) {
         ev_pen_fill(pen, (ev_rect){bar.x, bar.y, 0.5 * bar.width, bar.height}, 0.0, theme->early,
                     1.0);
         ev_pen_fill(pen, (ev_rect){bar.x + 0.5 * bar.width, bar.y, 0.5 * bar.width, bar.height},
                     0.0, theme->late, 1.0);
         return;
     }
-    ev_colour colour = row == 0             ? theme->past_sub
-                       : row == 1           ? theme->past_main
-                       : row == ROW_SHADOWS ? theme->ink
-                                            : theme->third;
-    ev_pen_fill(pen, bar, 0.0, colour, row == ROW_SHADOWS ? 0.9 : 0.85);
+    ev_pen_fill(pen, bar, 0.0, mark == MARK_RAYS ? ev_theme_fate(theme, fate) : theme->third, 0.85);
 }
 
 static void draw_stair(ev_pen *pen, const ledger_frame *frame, const ev_ledger_row *rows,
@@ -140,7 +145,7 @@ static void draw_stair(ev_pen *pen, const ledger_frame *frame, const ev_ledger_r
         double gain = rows[i].applies && !isnan(rows[i].db) ? rows[i].db : 0.0;
         double to = stair_x(frame, sum + gain);
         ev_pen_line(pen, from, y_before, from, y - half, pen->theme->third, 1.0, 0.9);
-        draw_step(pen, i, (ev_rect){from, y - half, fmax(to - from, 0.4), 2.0 * half});
+        draw_step(pen, &rows[i], (ev_rect){from, y - half, fmax(to - from, 0.4), 2.0 * half});
         if (kept && rows[i].applies) {
             double end = stair_x(frame, sum + kept[i].db);
             ev_pen_frame(pen,
@@ -189,7 +194,7 @@ static void draw_row(ev_pen *pen, const ledger_frame *frame, const ev_ledger_row
     double y = frame->top + index * frame->pitch, baseline = y + 4.5;
     char name[80], text[32];
     ev_colour ink = pointed ? theme->hand_text : row->applies ? theme->ink : theme->third;
-    draw_swatch(pen, index, frame->left, y);
+    draw_swatch(pen, row, frame->left, y);
     snprintf(name, sizeof name, "text.ledger.%s.label", row->id);
     ev_text(pen, (ev_words){.name = name,
                             .string = row->label,

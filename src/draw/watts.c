@@ -17,22 +17,21 @@ typedef struct watts_entry {
 
 static int list_entries(const ev_sheet *sheet, watts_entry entries[ENTRY_COUNT])
 {
+    static const ev_fate fates[] = {EV_FATE_APERTURE, EV_FATE_PAST_SUB, EV_FATE_PAST_MAIN};
+    static const char *const briefs[] = {"aperture", "past sub", "past dish"};
     const double *power = sheet->budget->feeds[sheet->feed].power;
+    int count = 0;
+    for (int i = 0; i < ENTRY_COUNT - 1; ++i) {
+        ev_watts_row row = ev_watts_of(fates[i]);
+        if (power[fates[i]] >= EV_LEAST_SHARE || i == 0)
+            entries[count++] =
+                (watts_entry){row.id, row.label, briefs[i], fates[i], power[fates[i]]};
+    }
     double shadow =
         power[EV_FATE_SHADOW_SUB] + power[EV_FATE_SHADOW_FEED] + power[EV_FATE_SHADOW_STRUTS];
-    const watts_entry all[ENTRY_COUNT] = {
-        {"aperture", ev_watts_of(EV_FATE_APERTURE).label, "aperture", EV_FATE_APERTURE,
-         power[EV_FATE_APERTURE]},
-        {"past_sub", ev_watts_of(EV_FATE_PAST_SUB).label, "past sub", EV_FATE_PAST_SUB,
-         power[EV_FATE_PAST_SUB]},
-        {"past_main", ev_watts_of(EV_FATE_PAST_MAIN).label, "past dish", EV_FATE_PAST_MAIN,
-         power[EV_FATE_PAST_MAIN]},
-        {"shadow", "in shadow", "shadow", EV_FATE_SHADOW_SUB, shadow},
-    };
-    int count = 0;
-    for (int i = 0; i < ENTRY_COUNT; ++i)
-        if (all[i].share >= EV_LEAST_SHARE || i == 0)
-            entries[count++] = all[i];
+    if (shadow >= EV_LEAST_SHARE)
+        entries[count++] =
+            (watts_entry){"shadow", "in shadow", "shadow", EV_FATE_SHADOW_SUB, shadow};
     return count;
 }
 

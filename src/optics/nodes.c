@@ -238,7 +238,7 @@ static ev_order order_of(const ev_antenna *antenna, int obstacle, ev_order order
     bool strip = ev_shadow_is_strip(&antenna->shadows, obstacle);
     int along = part_of(order.radial, extent[0], radius);
     int lines = strip ? part_of(order.radial, extent[1], radius) - 1
-                      : part_of(order.around, extent[1], radius) + 7;
+                      : part_of(order.around, extent[1], radius) + 16;
     return (ev_order){along, lines};
 }
 

@@ -111,7 +111,7 @@ static void add_piece(work *to, double from, double span, int count, bool bunche
     }
 }
 
-enum { SAMPLES_PER_SEED = 3, BREAK_CAPACITY = 4096, PIECE_SPARE = 6 };
+enum { SAMPLES_PER_SEED = 3, BREAK_CAPACITY = 4096, PIECE_SPARE = 8 };
 
 /* Angle at which the make-up changes between two that differ. An error d of it costs the integral
  * d^1.5. */
@@ -247,7 +247,7 @@ static void look_between(const bracket *line, looks *seen)
         double top = x[1] - 0.5 * slope / bend, height = f[1] - 0.25 * slope * slope / bend;
         bool one_sign = (f[0] > 0.0) == (f[1] > 0.0) && (f[1] > 0.0) == (f[2] > 0.0);
         double sign = f[1] > 0.0 ? 1.0 : -1.0, size = fmax(fabs(f[0]), fabs(f[2]));
-        if (!one_sign || !(top > x[0] && top < x[2]) || sign * height > 0.1 * size || top == x[1])
+        if (!one_sign || !(top > x[0] && top < x[2]) || sign * height > 0.3 * size || top == x[1])
             continue;
         int which, to = top < x[1] ? i : i + 1;
         double value = margin_at(line, top, &which);

@@ -157,7 +157,7 @@ static place look(const outline *o, double t)
         return at;
     }
     walk(o, t, &at);
-    double step = 1e-9 * r->radius;
+    double step = HAIR * r->radius;
     bool aimed = ev_reference_aim(r, at.x, at.y, &at.direction, &ray);
     if (!aimed || ray.inside < -HAIR) {
         at.left = at.right = EV_FATE_PAST_SUB;
@@ -419,7 +419,7 @@ static void walk_all(const ev_reference *r, tally *aperture, tally *rim)
 bool ev_reference_shares(const ev_reference *r, double shares[EV_FATE_COUNT])
 {
     double hand = image_hand(r), hand_of_rim = r->dual ? rim_hand(r) : 1.0, open = INFINITY;
-    for (int looks = LOOKS; looks <= MOST_LOOKS && open > 1e-6; looks *= 4) {
+    for (int looks = LOOKS; looks <= MOST_LOOKS && open > 3e-6; looks *= 4) {
         tally aperture = {.looks = looks}, rim = {.looks = looks};
         walk_all(r, &aperture, &rim);
         open = 0.0;
@@ -431,5 +431,5 @@ bool ev_reference_shares(const ev_reference *r, double shares[EV_FATE_COUNT])
     }
     /* the outside of the outermost outline holds the rest of the sphere */
     shares[r->dual ? EV_FATE_PAST_SUB : EV_FATE_PAST_MAIN] += 1.0;
-    return open <= 1e-6;
+    return open <= 3e-6;
 }

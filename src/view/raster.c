@@ -123,7 +123,7 @@ static bool prepare(const ev_raster *raster, const ev_stroke *s, trace *t)
 {
     double dx = (double)s->x1 - s->x0, dy = (double)s->y1 - s->y0;
     double length = hypot(dx, dy), from, to;
-    if (!(length > 1e-4) || !isfinite(length) || !(s->width > 0.0F) ||
+    if (!(length > 1e-4) || !isfinite(length) || !(s->width > 0.0F && s->width < 1e4F) ||
         !clip_stroke(raster, s, &from, &to)) {
         return false;
     }

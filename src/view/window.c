@@ -52,6 +52,7 @@ bool ev_window_open(ev_window *window, int width, int height, bool unseen,
         return false;
     }
     ask_for_core_profile();
+    SDL_GL_LoadLibrary(NULL); /* once more than windows do, so that it stays */
     window->window =
         SDL_CreateWindow("evenpath", SDL_WINDOWPOS_CENTERED, SDL_WINDOWPOS_CENTERED, width, height,
                          SDL_WINDOW_OPENGL | SDL_WINDOW_RESIZABLE | SDL_WINDOW_ALLOW_HIGHDPI);
@@ -78,7 +79,8 @@ void ev_window_close(ev_window *window)
         SDL_DestroyWindow(window->window);
     }
     *window = (ev_window){0};
-    SDL_Quit();
+    /* SDL itself ends with the process: it would unload the driver, and what the driver keeps to
+     * itself would look like a leak of ours */
 }
 
 void ev_window_resize(ev_window *window, int width, int height)

@@ -53,6 +53,41 @@ static void fill_sheet(const ev_loaded *loaded, const ev_study *study, bool dark
     list_fields(loaded, sheet);
 }
 
+/* Beams of all feeds in the plane that most of them point apart in, and the objective that their
+ * side lobes have to keep at this size of dish. */
+typedef struct page_beams {
+    ev_beam_curve curves[EV_FEED_CAPACITY];
+    ev_limit limit;
+} page_beams;
+
+static double plane_of_beams(const ev_antenna *antenna)
+{
+    double up = 0.0, across = 0.0;
+    for (int f = 0; f < antenna->feed_count; f++) {
+        up = fmax(up, fabs(antenna->feeds[f].wanted.x - antenna->feeds[0].wanted.x));
+        across = fmax(across, fabs(antenna->feeds[f].wanted.y - antenna->feeds[0].wanted.y));
+    }
+    return across > up ? 0.5 * EV_PI : 0.0;
+}
+
+static void fill_beams(const ev_study *study, page_beams *beams, ev_sheet *sheet)
+{
+    const ev_antenna *antenna = &study->antenna;
+    double phi = plane_of_beams(antenna), span = 0.0;
+    double wavelengths = 2.0 * antenna->radius / antenna->wavelength;
+    for (int f = 0; f < antenna->feed_count; f++)
+        span = fmax(span, ev_beam_curve_span(antenna, f));
+    for (int f = 0; f < antenna->feed_count; f++) {
+        ev_beam_curve_compute(antenna, f, phi, span, EV_BEAM_EXACT, &beams->curves[f]);
+        sheet->beams[f] = &beams->curves[f];
+    }
+    beams->limit = ev_limit_s580(wavelengths);
+    if (!ev_limit_applies(&beams->limit))
+        beams->limit = ev_limit_s465(wavelengths);
+    sheet->limit = &beams->limit;
+    sheet->plate = EV_PLATE_BEAM;
+}
+
 /* Where the part sits off its place, the page shows the Detail with its rings. */
 static bool wants_detail(const ev_verdict *verdict)
 {
@@ -67,7 +102,8 @@ int ev_command_picture(const ev_options *options)
         return code;
     ev_study *study = calloc(1, sizeof *study);
     ev_loss_map *map = calloc(1, sizeof *map);
-    if (!study || !map)
+    page_beams *beams = calloc(1, sizeof *beams);
+    if (!study || !map || !beams)
         abort();
     ev_study_want want = {.feed = loaded.feed,
                           .verdict = true,
@@ -77,6 +113,7 @@ int ev_command_picture(const ev_options *options)
     ev_study_compute(&loaded.design, loaded.design.frequencies[0], want, study);
     ev_sheet sheet;
     fill_sheet(&loaded, study, options->dark, &sheet);
+    fill_beams(study, beams, &sheet);
     if (wants_detail(&study->verdict)) {
         sheet.part = study->verdict.moves[0].part;
         ev_loss_map_compute(&loaded.design, loaded.design.frequencies[0], sheet.part, loaded.feed,
@@ -92,6 +129,7 @@ int ev_command_picture(const ev_options *options)
         fprintf(stderr, "evenpath: '%s' was not written: %s\n", options->operands[1], why);
         code = EV_EXIT_IO;
     }
+    free(beams);
     free(map);
     free(study);
     ev_unload(&loaded);

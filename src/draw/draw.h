@@ -123,7 +123,7 @@ typedef struct ev_sheet {
     const ev_beam_curve *kept_beam;               /* of the selected feed; NULL */
     const ev_limit *limit;                        /* drawn over the Beam plate; NULL */
     const ev_gain_curve *gain_curve;              /* Cut plate; NULL: not computed */
-    ev_plate plate;                               /* the one shown where there is room for one */
+    ev_plate plate; /* chosen by a tab: the only one, or the one below the Aperture */
     bool dark;
     bool paper; /* nothing to press: no button, tabs or marks of the pointer */
     bool unsaved, can_undo, can_redo, detail, grabbed, stale;
@@ -139,20 +139,28 @@ typedef struct ev_sheet {
      * front_exaggeration. */
     double aperture_range; /* m, path error of the full colour */
     double ledger_range;   /* dB, width of the stair */
+    double beam_range;     /* dB, depth of the Beam plate */
+    double cut_range;      /* dB, depth of the loss on the Cut plate */
+    /* Older than the settings on screen: dimmed, with a hairline along the top. */
+    bool beam_stale, cut_stale;
 } ev_sheet;
 
 /* Places of the regions for a page of width x height logical pixels (at least 1100 x 700). */
 typedef struct ev_page {
     double width, height;
     ev_rect bar, verdict, stage, watts, strip, ledger, plates[2];
-    int plate_count; /* plates side by side in the column: 2, or 1 with tabs */
+    int plate_count; /* one above the other in the column: 2, or 1 where there is no more room */
     ev_rect detail;  /* square of the enlarged circle, inside the stage */
 } ev_page;
 
 ev_page ev_page_layout(double width, double height);
 
-/* Fills front_exaggeration, aperture_range and ledger_range with what suits the sheet now, whatever
- * they held: call it at rest, keep the values while something moves. */
+/* Which plate is shown at plates[index]: the Aperture above and Beam or Cut below it, or the one
+ * chosen. */
+ev_plate ev_page_plate(const ev_page *page, const ev_sheet *sheet, int index);
+
+/* Fills front_exaggeration and the ranges with what suits the sheet now, whatever they held: call
+ * it at rest, keep the values while something moves. */
 void ev_sheet_scales(const ev_page *page, ev_sheet *sheet);
 
 /* Every region paints its own ground, but the two that lie over the 3D picture: the space notes and
@@ -174,7 +182,24 @@ void ev_draw_detail(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, 
 void ev_draw_watts(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_strip(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 void ev_draw_ledger(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+
+/* The plate shown at plates[index]; or each by itself, in its own place. Boxes: "tab.aperture",
+ * "tab.beam", "tab.cut" (buttons, where there is a choice); "plate.aperture", "plate.beam",
+ * "plate.cut" (plots). A plate whose numbers are not there yet says so over its axes. */
+void ev_draw_plate(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, int index,
+                   ev_boxes *boxes);
 void ev_draw_aperture(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+/* Curves against the angle, in dB below the peak of the selected feed's beam; the limit stands
+ * about that peak. */
+void ev_draw_beam(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+/* Above, the path error along the plane of symmetry; below, the loss as the part in hand moves. */
+void ev_draw_cut(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
+
+/* Data to page: (rad, dB below the peak, <= 0), and of the lower half of the Cut plate (m, dB of
+ * gain, <= 0). */
+ev_plot_map ev_beam_plot(const ev_page *page, const ev_sheet *sheet);
+ev_plot_map ev_cut_plot(const ev_page *page, const ev_sheet *sheet);
+
 /* The hairlines between regions, over all of them. */
 void ev_draw_rules(cairo_t *cairo, const ev_page *page, bool dark);
 

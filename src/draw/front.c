@@ -170,7 +170,8 @@ static void draw_extremes(ev_pen *pen, const ev_sheet *sheet, const ev_section *
     double gap = 20.0;
     double late_y = fmin(fmax(e->late_y + 4.0, top), bottom);
     double early_y = fmin(fmax(e->early_y + 4.0, top), bottom);
-    if (fabs(late_y - early_y) < gap) {
+    bool both = !ev_is_even(fmin(e->late, e->early), sheet);
+    if (both && fabs(late_y - early_y) < gap) {
         bool late_above = e->late_y <= e->early_y;
         double *upper = late_above ? &late_y : &early_y, *lower = late_above ? &early_y : &late_y;
         *upper = fmax(fmin(*upper, bottom - gap), top);
@@ -178,14 +179,16 @@ static void draw_extremes(ev_pen *pen, const ev_sheet *sheet, const ev_section *
     }
     ev_format_error(error, sizeof error, e->late, false);
     snprintf(text, sizeof text, "late %s", error);
-    draw_label(pen, "text.stage.late", text,
-               base + 14.0 + fmax(0.0, ahead_at(section, sheet, late_y - 4.0, 11.0)), late_y,
-               EV_FONT_BODY_STRONG, pen->theme->late);
+    if (!ev_is_even(e->late, sheet))
+        draw_label(pen, "text.stage.late", text,
+                   base + 14.0 + fmax(0.0, ahead_at(section, sheet, late_y - 4.0, 11.0)), late_y,
+                   EV_FONT_BODY_STRONG, pen->theme->late);
     ev_format_error(error, sizeof error, e->early, false);
     snprintf(text, sizeof text, "early %s", error);
-    draw_label(pen, "text.stage.early", text,
-               base + 14.0 + fmax(0.0, ahead_at(section, sheet, early_y - 4.0, 11.0)), early_y,
-               EV_FONT_BODY_STRONG, pen->theme->early);
+    if (!ev_is_even(e->early, sheet))
+        draw_label(pen, "text.stage.early", text,
+                   base + 14.0 + fmax(0.0, ahead_at(section, sheet, early_y - 4.0, 11.0)), early_y,
+                   EV_FONT_BODY_STRONG, pen->theme->early);
 }
 
 void ev_front_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet, double floor,

@@ -5,6 +5,9 @@
 
 #include <math.h>
 
+/* Two plates need this much, px; the upper one's share leaves the beam a little more. */
+static const double two_plates = 360.0, upper_share = 191.0 / 387.0;
+
 static double mix(double compact, double full, double share)
 {
     return compact + share * (full - compact);
@@ -27,6 +30,14 @@ ev_page ev_page_layout(double width, double height)
     page.stage = (ev_rect){0.0, bar + verdict, left, page.watts.y - bar - verdict};
     page.ledger = (ev_rect){left, bar, column, ledger};
     page.plates[0] = (ev_rect){left, bar + ledger, column, height - bar - ledger};
+    if (page.plates[0].height >= two_plates) {
+        ev_rect *upper = &page.plates[0], *lower = &page.plates[1];
+        *lower = *upper;
+        upper->height = round(upper_share * lower->height);
+        lower->y += upper->height;
+        lower->height -= upper->height;
+        page.plate_count = 2;
+    }
     double radius = mix(72.0, 88.0, share);
     radius *= fmax(1.0, fmin(left / 888.0, page.stage.height / 542.0));
     radius = fmin(radius, 170.0);
@@ -46,6 +57,7 @@ void ev_draw_rules(cairo_t *cairo, const ev_page *page, bool dark)
         {0.0, page->strip.y, left, page->strip.y},
         {left, page->ledger.y, left, page->height},
         {left, page->plates[0].y, right, page->plates[0].y},
+        {left, page->plates[page->plate_count - 1].y, right, page->plates[page->plate_count - 1].y},
     };
     cairo_set_source_rgb(cairo, theme->rule.r, theme->rule.g, theme->rule.b);
     cairo_set_line_width(cairo, 1.0);
@@ -90,6 +102,7 @@ void ev_draw_page(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev
     ev_draw_watts(cairo, page, sheet, boxes);
     ev_draw_strip(cairo, page, sheet, boxes);
     ev_draw_ledger(cairo, page, sheet, boxes);
-    ev_draw_aperture(cairo, page, sheet, boxes);
+    for (int i = 0; i < page->plate_count; ++i)
+        ev_draw_plate(cairo, page, sheet, i, boxes);
     ev_draw_rules(cairo, page, sheet->dark);
 }

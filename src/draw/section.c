@@ -1,5 +1,6 @@
 /* The Stage as a section to scale: fits the antenna and its Front into the room beside the Detail
  * and puts the parts of the drawing together. */
+#include "draw/plate.h"
 #include "draw/stage.h"
 
 #include <math.h>
@@ -175,4 +176,6 @@ void ev_sheet_scales(const ev_page *page, ev_sheet *sheet)
     sheet->front_exaggeration = ev_front_factor(sheet, section.scale, ev_front_room(page));
     sheet->aperture_range = ev_aperture_range(sheet);
     sheet->ledger_range = ev_ledger_range(sheet);
+    sheet->beam_range = ev_beam_range(page, sheet);
+    sheet->cut_range = ev_cut_range(sheet);
 }

@@ -21,6 +21,9 @@ typedef struct drawn_scene {
     ev_scene *scene;
     ev_study *study;
     ev_loss_map map;
+    ev_beam_curve beams[EV_FEED_CAPACITY];
+    ev_gain_curve gain;
+    ev_limit limit;
     ev_sheet sheet;
 } drawn_scene;
 
@@ -80,6 +83,25 @@ static void fill_sheet(drawn_scene *drawn)
     fill_fields(sheet);
 }
 
+/* Beams of all feeds, one of them as the kept one; a limit; the gain along the Detail's first axis.
+ */
+static void fill_curves(drawn_scene *drawn, double frequency)
+{
+    ev_sheet *sheet = &drawn->sheet;
+    const ev_antenna *antenna = sheet->antenna;
+    double span = ev_beam_curve_span(antenna, 0);
+    for (int f = 0; f < antenna->feed_count; ++f) {
+        ev_beam_curve_compute(antenna, f, 0.0, span, EV_BEAM_COARSE, &drawn->beams[f]);
+        sheet->beams[f] = &drawn->beams[f];
+    }
+    sheet->kept_beam = &drawn->beams[antenna->feed_count - 1];
+    drawn->limit = ev_limit_s580(2.0 * antenna->radius / antenna->wavelength);
+    sheet->limit = &drawn->limit;
+    ev_gain_curve_compute(sheet->design, frequency, sheet->part, 0, EV_AXIS_OUT, drawn->map.extent,
+                          &drawn->gain);
+    sheet->gain_curve = &drawn->gain;
+}
+
 static drawn_scene *load_scene(const char *file)
 {
     drawn_scene *drawn = calloc(1, sizeof *drawn);
@@ -105,6 +127,7 @@ static drawn_scene *load_scene(const char *file)
         drawn->study->verdict.id == EV_VERDICT_SUB_MISPLACED ? EV_PART_SUB : EV_PART_FEED;
     ev_loss_map_compute(design, frequency, part, 0, EV_AXIS_OUT, EV_AXIS_UP, 0.0, &drawn->map);
     fill_sheet(drawn);
+    fill_curves(drawn, frequency);
     return drawn;
 }
 

@@ -74,10 +74,11 @@ static void text_lies_inside_its_place(void **state)
     ev_boxes *boxes = calloc(1, sizeof *boxes);
     for (int i = 0; i < list->count; ++i)
         for (int size = 0; size < SIZE_COUNT; ++size)
-            for (int variant = 0; variant < 4; ++variant) {
+            for (int variant = 0; variant < 6; ++variant) {
                 ev_sheet sheet = list->items[i]->sheet;
                 sheet.dark = variant % 2 == 1;
                 sheet.detail = variant < 2;
+                sheet.plate = (ev_plate)(variant / 2);
                 char what[128];
                 snprintf(what, sizeof what, "%s at %g%s%s", list->items[i]->name, sizes[size][0],
                          sheet.dark ? " dark" : "", sheet.detail ? "" : " without detail");
@@ -144,6 +145,7 @@ static void button_stands_only_where_there_is_a_move(void **state)
         cairo_surface_destroy(draw_page(&sheet, 1280.0, 800.0, boxes));
         assert_null(ev_boxes_find(boxes, "button.move"));
         assert_null(ev_boxes_find(boxes, "tab.space"));
+        assert_null(ev_boxes_find(boxes, "tab.cut"));
     }
     free(boxes);
 }
@@ -153,6 +155,7 @@ static void boxes_are_where_the_window_looks(void **state)
     static const char *const names[] = {
         "place.bar",      "place.verdict",    "place.stage",      "place.watts",
         "place.strip",    "place.ledger",     "place.aperture",   "tab.section",
+        "place.beam",     "plate.beam",       "tab.beam",         "tab.cut",
         "tab.space",      "plot.section",     "plot.detail",      "plate.aperture",
         "ledger.phase",   "ledger.past_sub",  "ledger.blockage",  "watts.aperture",
         "action.save",    "action.fit",       "field.field.0",    "part.feed.0",
@@ -284,13 +287,15 @@ static void no_region_is_blank_or_flooded(void **state)
     const struct {
         ev_rect place;
         double least, most;
-    } regions[] = {{page.bar, 0.01, 0.15},     {page.verdict, 0.01, 0.25}, {page.stage, 0.1, 0.6},
-                   {page.watts, 0.06, 0.35},   {page.strip, 0.01, 0.25},   {page.ledger, 0.03, 0.2},
-                   {page.plates[0], 0.02, 0.7}};
+    } regions[] = {{page.bar, 0.01, 0.15},      {page.verdict, 0.01, 0.25},
+                   {page.stage, 0.1, 0.6},      {page.watts, 0.06, 0.35},
+                   {page.strip, 0.01, 0.25},    {page.ledger, 0.03, 0.2},
+                   {page.plates[0], 0.02, 0.7}, {page.plates[1], 0.02, 0.3}};
     for (int i = 0; i < list->count; ++i)
         for (int dark = 0; dark < 2; ++dark) {
             ev_sheet sheet = list->items[i]->sheet;
             sheet.dark = dark;
+            sheet.plate = i % 2 ? EV_PLATE_BEAM : EV_PLATE_CUT;
             cairo_surface_t *surface = draw_page(&sheet, 1280.0, 800.0, boxes);
             for (size_t k = 0; k < sizeof regions / sizeof regions[0]; ++k) {
                 double share = inked(surface, regions[k].place, dark);
@@ -310,12 +315,21 @@ static void regions_tile_the_page(void **state)
             ev_page page = ev_page_layout(width, height);
             double left = page.bar.height + page.verdict.height + page.stage.height +
                           page.watts.height + page.strip.height;
-            double right = page.bar.height + page.ledger.height + page.plates[0].height;
+            double right = page.bar.height + page.ledger.height;
+            for (int i = 0; i < page.plate_count; ++i) {
+                assert_true(fabs(page.plates[i].y - right) < 1e-9);
+                assert_true(page.plates[i].height > 170.0);
+                right += page.plates[i].height;
+            }
             assert_true(fabs(left - height) < 1e-9 && fabs(right - height) < 1e-9);
             assert_true(fabs(page.stage.width + page.ledger.width - width) < 1e-9);
             assert_true(lies_within(page.detail, page.stage));
-            assert_true(page.stage.width > 0.6 * width && page.plates[0].height > 300.0);
+            assert_true(page.stage.width > 0.6 * width);
         }
+    assert_int_equal(ev_page_layout(1100.0, 700.0).plate_count, 1);
+    ev_page page = ev_page_layout(1280.0, 800.0);
+    assert_int_equal(page.plate_count, 2);
+    assert_true(page.plates[0].y == 413.0 && page.plates[1].y == 604.0);
 }
 
 static void row_pointed_at_turns_yellow(void **state)

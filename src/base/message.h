@@ -127,6 +127,8 @@
 #define EV_MESSAGE_sub_impossible                                                                  \
     "'{name}': no subreflector meets these values; change the magnification, interfocal distance " \
     "or diameter"
+#define EV_MESSAGE_sub_oversize                                                                    \
+    "the subreflector's surface is not wide enough for {0} of oversize; give less"
 #define EV_MESSAGE_sub_larger_than_dish                                                            \
     "the subreflector ({0}) is larger than the dish ({1}); make it smaller"
 #define EV_MESSAGE_sub_tilt_on_symmetric                                                           \

@@ -66,6 +66,18 @@ static const char *given_shape(const ev_sub_design *sub)
     return sub->shape_given == EV_GIVEN_MAGNIFICATION ? "magnification" : "eccentricity";
 }
 
+/* Where the widened rim reaches beyond the conic's own width there is no mirror to add. */
+static bool rim_is_on_conic(const ev_sub *sub)
+{
+    enum { ANGLES = 24 };
+    for (int i = 0; i < ANGLES; i++) {
+        ev_vec3 point = ev_sub_rim_point(sub, 2.0 * EV_PI * i / ANGLES);
+        if (!(fabs(ev_conic_side(&sub->placed, point)) <= 1e-6 * sub->semi_long))
+            return false;
+    }
+    return true;
+}
+
 static bool check_sub(report *to, const ev_design *design)
 {
     const ev_sub_design *sub = &design->sub;
@@ -94,6 +106,13 @@ static bool check_sub(report *to, const ev_design *design)
     double size = 2.0 * (fmax(built.semi_long, built.semi_short) + sub->oversize);
     if (!(size < design->main.diameter)) {
         add(to, EV_PROBLEM_SUB_LARGER_THAN_DISH, "sub.", "shape", size, design->main.diameter);
+        return false;
+    }
+    if (!need_finite(to, "sub.", "shift",
+                     sub->shift.x + sub->shift.y + sub->shift.z + sub->tilt_x + sub->tilt_y))
+        return false;
+    if (!rim_is_on_conic(&built)) {
+        add(to, EV_PROBLEM_SUB_OVERSIZE, "sub.", "oversize", sub->oversize, 0.0);
         return false;
     }
     return true;

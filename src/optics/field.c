@@ -249,26 +249,23 @@ static double error_at(const surface_error *error, double x, double y)
            error->tilt_y * y;
 }
 
-/* Pattern search from a sampled extreme, kept within the rims. sign: +1 highest, -1 lowest. */
+/* Compass search from a sampled extreme, along the circles about the aperture centre and across
+ * them, so that it can follow the rims. sign: +1 highest, -1 lowest. */
 static double refine(const surface_error *error, double x, double y, double start, double sign)
 {
     const ev_antenna *antenna = error->antenna;
-    double best = start;
+    double best = start, r = hypot(x - antenna->offset, y), phi = atan2(y, x - antenna->offset);
     for (double step = 0.1 * antenna->radius; step > 1e-5 * antenna->radius; step *= 0.5) {
         for (int side = 0; side < 4; side++) {
-            double tx = x + (side == 0 ? step : side == 1 ? -step : 0.0);
-            double ty = y + (side == 2 ? step : side == 3 ? -step : 0.0);
-            double r = hypot(tx - antenna->offset, ty);
-            double to = fmin(fmax(r, antenna->hole_radius), antenna->radius);
-            if (r > 0.0 && to != r) {
-                tx = antenna->offset + (tx - antenna->offset) * to / r;
-                ty *= to / r;
-            }
-            double value = error_at(error, tx, ty);
+            double out = side == 0 ? step : side == 1 ? -step : 0.0;
+            double turn = (side == 2 ? step : side == 3 ? -step : 0.0) / fmax(r, step);
+            double to = fmin(fmax(r + out, antenna->hole_radius), antenna->radius);
+            double value =
+                error_at(error, antenna->offset + to * cos(phi + turn), to * sin(phi + turn));
             if (sign * value > sign * best) {
                 best = value;
-                x = tx;
-                y = ty;
+                r = to;
+                phi += turn;
             }
         }
     }

@@ -73,6 +73,14 @@ static void vast_sub(ev_design *d)
     d->sub.interfocal = 120.0;
     d->sub.derived = EV_DERIVED_DIAMETER;
 }
+static void wide_as_the_ellipsoid(ev_design *d)
+{
+    d->sub.oversize = 0.6 * d->sub.interfocal;
+}
+static void nan_sub_tilt(ev_design *d)
+{
+    d->sub.tilt_y = NAN;
+}
 static void tilted_symmetric(ev_design *d)
 {
     d->sub.axis_tilt = 0.1;
@@ -176,6 +184,8 @@ static void test_every_problem_is_reached(void **state)
         {EV_PROBLEM_SUB_SHAPE, EV_FIXTURE_CASSEGRAIN, weak_magnification, "sub.magnification"},
         {EV_PROBLEM_SUB_IMPOSSIBLE, EV_FIXTURE_CASSEGRAIN, no_such_sub, NULL},
         {EV_PROBLEM_SUB_LARGER_THAN_DISH, EV_FIXTURE_CASSEGRAIN, vast_sub, NULL},
+        {EV_PROBLEM_NOT_FINITE, EV_FIXTURE_GREGORIAN, nan_sub_tilt, "sub.shift"},
+        {EV_PROBLEM_SUB_OVERSIZE, EV_FIXTURE_GREGORIAN, wide_as_the_ellipsoid, "sub.oversize"},
         {EV_PROBLEM_SUB_TILT_ON_SYMMETRIC, EV_FIXTURE_CASSEGRAIN, tilted_symmetric,
          "sub.axis_tilt"},
         {EV_PROBLEM_SUB_DIAMETER_ON_OFFSET, EV_FIXTURE_OFFSET_GREGORIAN, offset_by_diameter,

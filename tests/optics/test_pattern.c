@@ -55,8 +55,8 @@ static double share(ev_pattern *pattern, double theta)
     gsl_function function = {ring, pattern};
     double knots[] = {0.0, 0.05 * theta, 0.3 * theta, theta}, sum = 0.0, part, error;
     for (int i = 0; i < 3; i++) {
-        gsl_integration_qag(&function, knots[i], knots[i + 1], 1e-10, 1e-9, 2000,
-                            GSL_INTEG_GAUSS31, work, &part, &error);
+        gsl_integration_qag(&function, knots[i], knots[i + 1], 1e-10, 1e-9, 2000, GSL_INTEG_GAUSS31,
+                            work, &part, &error);
         sum += part;
     }
     gsl_integration_workspace_free(work);

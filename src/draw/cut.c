@@ -15,7 +15,7 @@ static cut_plots plots_of(const ev_page *page)
 {
     ev_rect place = ev_plate_place(page, EV_PLATE_CUT);
     double top = place.y + ev_plate_head(page) + 5.0, bottom = place.y + place.height - 30.0;
-    double gap = 17.0, share = 0.44, left = place.x + 62.0;
+    double gap = 17.0, share = 0.44, left = place.x + 68.0;
     double width = place.x + place.width - 24.0 - left, room = bottom - top - gap;
     return (cut_plots){.path = {left, top, width, share * room},
                        .loss = {left, top + share * room + gap, width, (1.0 - share) * room}};
@@ -137,7 +137,9 @@ static void finish_stretch(ev_pen *pen, double zero, double from, double to, ev_
 static void draw_path(ev_pen *pen, const ev_sheet *sheet, const ev_plot_map *map, ev_rect plot)
 {
     double before = NAN, before_x = 0.0, from = 0.0;
-    ev_colour colour = pen->theme->ink;
+    ev_colour colour = pen->theme->ink, late = pen->theme->late, early = pen->theme->early;
+    if (ev_is_even(sheet->budget->feeds[sheet->feed].path_error.peak_to_valley, sheet))
+        late = early = colour;
     for (int i = 0; i <= sheet->front_count; ++i) {
         double error = i < sheet->front_count ? sheet->front[i] : NAN, x = before_x, y = map->y0;
         if (i < sheet->front_count)
@@ -156,7 +158,7 @@ static void draw_path(ev_pen *pen, const ev_sheet *sheet, const ev_plot_map *map
         }
         if (isfinite(error)) {
             cairo_line_to(pen->cairo, x, y);
-            colour = error > 0.0 ? pen->theme->late : pen->theme->early;
+            colour = error > 0.0 ? late : early;
         }
         before = error;
         before_x = x;

@@ -2,6 +2,7 @@
  * at, joined to the part by tangents. Ticks and axes are the part's own; the rings are its
  * tolerance; the handle is where it sits. Called by the Stage in section and in space. */
 #include "draw/detail.h"
+#include "draw/stage.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -84,34 +85,6 @@ static double step_of_words(double extent)
     return fmax(ev_step_below(extent / 3.0), 1e-4);
 }
 
-/* The stretches of a line that lie outside every text drawn so far. */
-static void draw_around_text(ev_pen *pen, const double from[2], const double to[2])
-{
-    enum { PIECES = 400 };
-    bool free_piece[PIECES];
-    memset(free_piece, 1, sizeof free_piece);
-    for (int i = 0; pen->boxes && i < pen->boxes->count; ++i) {
-        const ev_box *box = &pen->boxes->items[i];
-        for (int k = 0; box->kind == EV_BOX_TEXT && k < PIECES; ++k) {
-            double share = (k + 0.5) / PIECES;
-            double x = from[0] + share * (to[0] - from[0]) - box->rect.x;
-            double y = from[1] + share * (to[1] - from[1]) - box->rect.y;
-            if (x > -5.0 && x < box->rect.width + 5.0 && y > -2.0 && y < box->rect.height + 2.0)
-                free_piece[k] = false;
-        }
-    }
-    for (int k = 0, start = 0; k <= PIECES; ++k) {
-        if (k < PIECES && free_piece[k])
-            continue;
-        double a = (double)start / PIECES, b = (double)k / PIECES;
-        if (k > start)
-            ev_pen_line(pen, from[0] + a * (to[0] - from[0]), from[1] + a * (to[1] - from[1]),
-                        from[0] + b * (to[0] - from[0]), from[1] + b * (to[1] - from[1]),
-                        pen->theme->second, 0.8, 0.8);
-        start = k + 1;
-    }
-}
-
 /* Outer tangents of the two circles, interrupted where there are words. */
 static void draw_tangents(ev_pen *pen, const ev_detail *detail, double x, double y)
 {
@@ -126,7 +99,7 @@ static void draw_tangents(ev_pen *pen, const ev_detail *detail, double x, double
         double nx = along * dx - side * across * dy, ny = along * dy + side * across * dx;
         const double from[2] = {x + part_radius * nx, y + part_radius * ny};
         const double to[2] = {detail->x + detail->radius * nx, detail->y + detail->radius * ny};
-        draw_around_text(pen, from, to);
+        ev_line_around_text(pen, from, to, pen->theme->second, 0.8, 0.8);
     }
 }
 

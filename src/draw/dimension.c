@@ -1,7 +1,9 @@
-/* Dimension lines and the scale bar. Called by the section. */
+/* Dimension lines, the scale bar, lines that give way to words. Called by the section and the
+ * Detail. */
 #include "draw/stage.h"
 
 #include <math.h>
+#include <string.h>
 
 static const double tip = 6.5;
 
@@ -81,4 +83,32 @@ void ev_scale_bar(ev_pen *pen, double x, double y, double scale)
                             .width = 90.0,
                             .baseline = y + 4.0,
                             .halo = true});
+}
+
+void ev_line_around_text(ev_pen *pen, const double from[2], const double to[2], ev_colour colour,
+                         double width, double opacity)
+{
+    enum { PIECES = 400 };
+    bool free_piece[PIECES];
+    memset(free_piece, 1, sizeof free_piece);
+    for (int i = 0; pen->boxes && i < pen->boxes->count; ++i) {
+        const ev_box *box = &pen->boxes->items[i];
+        for (int k = 0; box->kind == EV_BOX_TEXT && k < PIECES; ++k) {
+            double share = (k + 0.5) / PIECES;
+            double x = from[0] + share * (to[0] - from[0]) - box->rect.x;
+            double y = from[1] + share * (to[1] - from[1]) - box->rect.y;
+            if (x > -5.0 && x < box->rect.width + 5.0 && y > -2.0 && y < box->rect.height + 2.0)
+                free_piece[k] = false;
+        }
+    }
+    for (int k = 0, start = 0; k <= PIECES; ++k) {
+        if (k < PIECES && free_piece[k])
+            continue;
+        double a = (double)start / PIECES, b = (double)k / PIECES;
+        if (k > start)
+            ev_pen_line(pen, from[0] + a * (to[0] - from[0]), from[1] + a * (to[1] - from[1]),
+                        from[0] + b * (to[0] - from[0]), from[1] + b * (to[1] - from[1]), colour,
+                        width, opacity);
+        start = k + 1;
+    }
 }

@@ -159,6 +159,7 @@ void ev_draw_section(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet,
     ev_outline_mirrors(&pen, &section.map, antenna);
     double floor = sheet->detail ? page->detail.y - 8.0 : page->stage.y + page->stage.height - 14.0;
     ev_front_draw(&pen, &section, &scaled, floor, emphasis.front);
+    ev_peak_draw(&pen, &section, &scaled, emphasis.front);
     ev_outline_feeds(&pen, &section.map, antenna, sheet->feed);
     draw_diameter(&pen, &section, antenna);
     draw_focal_length(&pen, &section, antenna);

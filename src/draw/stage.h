@@ -59,6 +59,16 @@ void ev_dimension_level(ev_pen *pen, const char *name, const char *label, double
                         double y);
 void ev_scale_bar(ev_pen *pen, double x, double y, double scale);
 
+/* The stretches of a line that lie outside every text drawn so far. */
+void ev_line_around_text(ev_pen *pen, const double from[2], const double to[2], ev_colour colour,
+                         double width, double opacity);
+
+/* Where the beam goes when that is not where it is wanted: a ray from the middle of the Front, its
+ * slope drawn larger by the Front's factor, and how far off it is. */
+void ev_peak_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet, double strength);
+/* Angles of the peak off the wanted direction, rad, up and left; false when too small to show. */
+bool ev_peak_is_off(const ev_sheet *sheet, double off[2]);
+
 /* Tabs Section and Space, with what is being shown beside them. */
 void ev_stage_tabs(ev_pen *pen, const ev_sheet *sheet, const char *words);
 

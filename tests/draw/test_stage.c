@@ -242,6 +242,65 @@ static void pointing_at_a_row_fades_the_rest(void **state)
     assert_true(e.front == 1.0 && e.rest == 1.0 && !e.words[0]);
 }
 
+/* The ray stands square to the mean of the Front, drawn as much too steep; nothing where the beam
+ * is where it is wanted. */
+static void beam_off_its_axis_is_marked(void **state)
+{
+    const scene_list *list = *state;
+    ev_boxes *boxes = calloc(1, sizeof *boxes);
+    int off_count = 0, on_count = 0;
+    for (int i = 0; i < list->count; ++i) {
+        const ev_sheet *sheet = &list->items[i]->sheet;
+        double off[2];
+        bool is_off = ev_peak_is_off(sheet, off);
+        cairo_surface_destroy(draw_page(sheet, 1280.0, 800.0, boxes));
+        const ev_box *box = ev_boxes_find(boxes, "text.stage.peak");
+        assert_int_equal(box != NULL, is_off);
+        *(is_off ? &off_count : &on_count) += 1;
+        if (is_off) {
+            assert_memory_equal(box->text, "beam ", 5);
+            double largest = fmax(fabs(off[0]), fabs(off[1])) * 180.0 / EV_PI;
+            assert_true(fabs(read_drawn(box->text + 5) - largest) <= 0.05 * largest);
+            const char *word = off[0] > 0.0 ? "up" : "down";
+            assert_int_equal(strstr(box->text, word) != NULL, fabs(off[0]) > 0.1 * fabs(off[1]));
+        }
+    }
+    assert_true(off_count > 1 && on_count > 1);
+    free(boxes);
+}
+
+static void beam_ray_leans_as_the_front_does(void **state)
+{
+    const scene_list *list = *state;
+    ev_sheet sheet = list->items[0]->sheet;
+    ev_budget *budget = malloc(sizeof *budget);
+    *budget = *sheet.budget;
+    sheet.budget = budget;
+    sheet.front_exaggeration = 10.0;
+    ev_section section = {.map = {.x0 = 100.0, .x_scale = 1.0, .y0 = 100.0, .y_scale = -1.0},
+                          .scale = 1.0};
+    for (int sign = -1; sign <= 1; ++sign) {
+        budget->feeds[0].wanted = (ev_vec3){0.0, 0.0, 1.0};
+        budget->feeds[0].peak = (ev_vec3){sin(0.03 * sign), 0.0, cos(0.03 * sign)};
+        cairo_surface_t *surface = cairo_image_surface_create(CAIRO_FORMAT_RGB24, 400, 200);
+        cairo_t *cairo = cairo_create(surface);
+        ev_pen pen = ev_pen_begin(cairo, false, NULL, "t", (ev_rect){0.0, 0.0, 400.0, 200.0});
+        ev_pen_ground(&pen);
+        ev_peak_draw(&pen, &section, &sheet, 1.0);
+        ev_pen_end(&pen);
+        cairo_destroy(cairo);
+        cairo_surface_flush(surface);
+        int y = 100 - (int)lround(sheet.antenna->offset) - (int)lround(50.0 * 0.3 * sign);
+        unsigned darkest = 0xFFFFFF;
+        for (int dy = -1; dy <= 1; ++dy)
+            darkest =
+                pixel_at(surface, 150, y + dy) < darkest ? pixel_at(surface, 150, y + dy) : darkest;
+        assert_int_equal(darkest < 0x808080, sign != 0);
+        cairo_surface_destroy(surface);
+    }
+    free(budget);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -253,6 +312,8 @@ int main(void)
         cmocka_unit_test(detail_without_a_map_shows_no_rings_and_no_cost),
         cmocka_unit_test(tangents_cross_no_words),
         cmocka_unit_test(pointing_at_a_row_fades_the_rest),
+        cmocka_unit_test(beam_off_its_axis_is_marked),
+        cmocka_unit_test(beam_ray_leans_as_the_front_does),
     };
     return cmocka_run_group_tests(tests, load_scenes, free_scenes);
 }

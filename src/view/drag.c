@@ -278,8 +278,13 @@ static void end_field(ev_view *view)
         view->fresh = true;
         return;
     }
-    ev_field_words(&view->model, &view->rows[view->drag.field], words);
-    ev_model_note(&view->model, words);
+    const ev_field_row *row = &view->rows[view->drag.field];
+    ev_design left =
+        ev_field_set(&view->model, row, &view->drag.from, ev_field_value(&view->model, row));
+    ev_field_words(&view->model, row, words);
+    if (memcmp(&left, &view->drag.from, sizeof left) != 0) { /* not back where it was */
+        ev_model_note(&view->model, words);
+    }
 }
 
 static void end_button(ev_view *view, const ev_input *input)
@@ -306,6 +311,18 @@ void ev_drag_end(ev_view *view, const ev_input *input)
         note_move(view);
     }
     view->drag.moved = false;
+}
+
+void ev_drag_cancel(ev_view *view)
+{
+    ev_drag_kind kind = view->drag.kind;
+    bool design = kind == EV_DRAG_FIELD || kind == EV_DRAG_DETAIL || kind == EV_DRAG_PART;
+    if (design && view->drag.moved) {
+        ev_model_try(&view->model, &view->drag.from, false);
+    }
+    view->drag.kind = EV_DRAG_NONE;
+    view->drag.moved = false;
+    view->dirty = true;
 }
 
 /* Which of the part's axes a step along the page means: the one that lies nearer to it. */

@@ -146,7 +146,7 @@ double ev_field_value(const ev_model *model, const ev_field_row *row)
 
 double ev_field_nominal(const ev_model *model, const ev_field_row *row)
 {
-    return row->is_move ? 0.0 : ev_parameter_get(ev_scene_design(model->scene), row->ref);
+    return row->is_move ? 0.0 : ev_parameter_get(&model->opened, row->ref);
 }
 
 void ev_field_show(const ev_model *model, const ev_field_row *row, ev_field *field)

@@ -101,6 +101,8 @@ static void describe_vertices(void)
                  {1, offsetof(ev_vertex, value)}};
     for (GLuint i = 0; i < sizeof parts / sizeof parts[0]; ++i) {
         glEnableVertexAttribArray(i);
+        /* GL takes the offset dressed as a pointer */
+        /* NOLINTNEXTLINE(performance-no-int-to-ptr) */
         glVertexAttribPointer(i, parts[i].size, GL_FLOAT, GL_FALSE, sizeof(ev_vertex),
                               (const void *)parts[i].offset);
     }

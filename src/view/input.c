@@ -19,9 +19,23 @@ static const ev_box *find_pointed(const ev_view *view, double x, double y)
     return NULL;
 }
 
+/* A shape that says what a press would do. */
+static SDL_SystemCursor shape_for(const ev_view *view, const ev_box *box)
+{
+    if (!box || box->kind == EV_BOX_ROW) {
+        return SDL_SYSTEM_CURSOR_ARROW;
+    }
+    if (box->kind == EV_BOX_FIELD) {
+        return ev_strip_find(view, box->name) == view->editing ? SDL_SYSTEM_CURSOR_IBEAM
+                                                               : SDL_SYSTEM_CURSOR_SIZEWE;
+    }
+    return box->kind == EV_BOX_HANDLE ? SDL_SYSTEM_CURSOR_SIZEALL : SDL_SYSTEM_CURSOR_HAND;
+}
+
 void ev_view_point(ev_view *view, double x, double y)
 {
     const ev_box *box = find_pointed(view, x, y);
+    ev_window_cursor(&view->window, shape_for(view, box));
     const char *name = box ? box->name : "";
     if (strcmp(name, view->pointed) != 0) {
         snprintf(view->pointed, sizeof view->pointed, "%s", name);
@@ -148,6 +162,12 @@ static void gallery_key(ev_view *view, const ev_input *input)
 static void on_key(ev_view *view, const ev_input *input)
 {
     bool open = view->model.scene != NULL;
+    if (view->drag.kind != EV_DRAG_NONE) { /* a hand is at work: nothing else, but it can let go */
+        if (input->key == SDLK_ESCAPE) {
+            ev_drag_cancel(view);
+        }
+        return;
+    }
     if (open && ev_strip_key(view, input)) {
         return;
     }

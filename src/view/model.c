@@ -68,6 +68,7 @@ bool ev_model_open(ev_model *model, const char *path, const char *const *assignm
     ev_model_close_scene(model);
     model->scene = scene;
     model->design = design;
+    model->opened = *ev_scene_design(scene);
     ev_history_start(model->history, ev_scene_design(scene));
     model->saved_id = ev_history_id(model->history);
     if (assignment_count > 0) {

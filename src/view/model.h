@@ -12,6 +12,7 @@
 typedef struct ev_model {
     ev_scene *scene; /* NULL: nothing open */
     ev_design design;
+    ev_design opened; /* as it was opened: where the marks of the tapes stand */
     ev_history *history;
     unsigned saved_id; /* the moment that is in the file */
 

@@ -126,6 +126,8 @@ extern const double ev_turn_per_pixel; /* rad of space per pixel of the hand */
 void ev_drag_begin(ev_view *view, const ev_input *input);
 void ev_drag_move(ev_view *view, const ev_input *input);
 void ev_drag_end(ev_view *view, const ev_input *input);
+/* Puts back what was being moved. */
+void ev_drag_cancel(ev_view *view);
 bool ev_view_moving(const ev_view *view);
 /* Moves the part in hand by steps along the page. */
 void ev_view_nudge(ev_view *view, int right, int up, double factor);

@@ -72,6 +72,11 @@ bool ev_window_open(ev_window *window, int width, int height, bool unseen,
 
 void ev_window_close(ev_window *window)
 {
+    for (int i = 0; i < SDL_NUM_SYSTEM_CURSORS; ++i) {
+        if (window->cursors[i]) {
+            SDL_FreeCursor(window->cursors[i]);
+        }
+    }
     if (window->context) {
         SDL_GL_DeleteContext(window->context);
     }
@@ -97,6 +102,16 @@ void ev_window_measure(ev_window *window)
     window->width = width;
     window->height = height;
     window->scale = width > 0 ? (double)window->pixel_width / width : 1.0;
+}
+
+void ev_window_cursor(ev_window *window, SDL_SystemCursor shape)
+{
+    if (!window->cursors[shape]) {
+        window->cursors[shape] = SDL_CreateSystemCursor(shape);
+    }
+    if (window->cursors[shape] && SDL_GetCursor() != window->cursors[shape]) {
+        SDL_SetCursor(window->cursors[shape]);
+    }
 }
 
 void ev_window_title(ev_window *window, const char *scene)

@@ -10,9 +10,10 @@
 typedef struct ev_window {
     SDL_Window *window;
     SDL_GLContext context;
-    double width, height;          /* logical pixels */
-    int pixel_width, pixel_height; /* device pixels */
-    double scale;                  /* device pixels per logical pixel */
+    double width, height;                        /* logical pixels */
+    int pixel_width, pixel_height;               /* device pixels */
+    double scale;                                /* device pixels per logical pixel */
+    SDL_Cursor *cursors[SDL_NUM_SYSTEM_CURSORS]; /* made when first wanted */
 } ev_window;
 
 enum { EV_WINDOW_LEAST_WIDTH = 1100, EV_WINDOW_LEAST_HEIGHT = 700 };
@@ -27,6 +28,9 @@ void ev_window_resize(ev_window *window, int width, int height);
 /* Reads the size again after the window changed. */
 void ev_window_measure(ev_window *window);
 void ev_window_title(ev_window *window, const char *scene);
+
+/* The shape of the pointer; none where the display has no such shape. */
+void ev_window_cursor(ev_window *window, SDL_SystemCursor shape);
 
 /* The pixels last drawn, before they are shown; the caller destroys the surface. NULL: no memory.
  */

@@ -20,7 +20,7 @@ ev_vec3 ev_part_axis_direction(const ev_antenna *antenna, ev_part part, int feed
     static const ev_vec3 fixed[] = {{0.0, 0.0, 1.0}, {1.0, 0.0, 0.0}, {0.0, 1.0, 0.0}};
     if (part == EV_PART_SUB)
         return fixed[axis];
-    ev_vec3 out = ev_vec3_scale(-1.0, antenna->feeds[feed].nominal_axis);
+    ev_vec3 out = ev_vec3_scale(-1.0, antenna->feeds[feed].axis);
     if (axis == EV_AXIS_OUT)
         return out;
     ev_vec3 hint = fabs(out.x) < 0.999 ? fixed[EV_AXIS_UP] : fixed[EV_AXIS_OUT];

@@ -149,18 +149,31 @@ static void weigh_struts(const look *at, const ev_feed_budget *now, ev_verdict *
     verdict->id = EV_VERDICT_STRUTS;
 }
 
-/* Moves every move of the verdict in a copy and takes the gain there. */
-static double gain_after(const look *at, const ev_verdict *verdict)
+/* Gain on the wanted axis with some moves made, shadows and the subreflector's rim in it. */
+static double gain_with(const look *at, const ev_move *moves, int count)
 {
     ev_design moved = *at->design;
     ev_antenna antenna;
     ev_feed_budget budget;
     ev_antenna_build(at->design, at->frequency, &antenna);
-    for (int i = 0; i < verdict->move_count; i++)
-        ev_part_move(&moved, &antenna, verdict->moves[i].part, at->feed, verdict->moves[i].axis,
-                     verdict->moves[i].by);
+    for (int i = 0; i < count; i++)
+        ev_part_move(&moved, &antenna, moves[i].part, at->feed, moves[i].axis, moves[i].by);
     budget_of(&moved, at->frequency, at->feed, &budget);
     return budget.gain_on_axis_dbi;
+}
+
+/* The moves were found on the smooth part of the gain; what they are said to win is the budget's
+ * difference. */
+static void price_moves(const look *at, ev_verdict *verdict)
+{
+    double now = verdict->now_dbi;
+    for (int i = 0; i < verdict->move_count; i++)
+        verdict->moves[i].wins_db = gain_with(at, &verdict->moves[i], 1) - now;
+    if (verdict->feed_only.by != 0.0)
+        verdict->feed_only_db = gain_with(at, &verdict->feed_only, 1) - now;
+    verdict->after_dbi = gain_with(at, verdict->moves, verdict->move_count);
+    verdict->loss_db = verdict->after_dbi - now;
+    sort_moves(verdict);
 }
 
 static void settle_in_place(const look *at, const ev_feed_budget *now, ev_verdict *verdict)
@@ -194,7 +207,7 @@ void ev_verdict_find(const ev_design *design, double frequency, int feed, ev_ver
         if (verdict->id == EV_VERDICT_IN_PLACE)
             settle_in_place(&at, &now, verdict);
         else
-            verdict->after_dbi = gain_after(&at, verdict);
+            price_moves(&at, verdict);
         if (verdict->wavelengths < 10.0)
             verdict->id = EV_VERDICT_TOO_SMALL;
     }

@@ -104,6 +104,30 @@ static void run_detail(ev_view *view)
     view->detail = !view->detail;
 }
 
+static void run_aperture(ev_view *view)
+{
+    view->plate = EV_PLATE_APERTURE;
+}
+
+static void run_beam(ev_view *view)
+{
+    view->plate = EV_PLATE_BEAM;
+}
+
+static void run_cut(ev_view *view)
+{
+    view->plate = EV_PLATE_CUT;
+}
+
+/* With two plates in the column the Aperture is always there: Beam and Cut take turns. */
+static void run_plate(ev_view *view)
+{
+    bool two = view->page.plate_count > 1;
+    view->plate = view->plate == EV_PLATE_CUT    ? (two ? EV_PLATE_BEAM : EV_PLATE_APERTURE)
+                  : view->plate == EV_PLATE_BEAM ? EV_PLATE_CUT
+                                                 : (two ? EV_PLATE_CUT : EV_PLATE_BEAM);
+}
+
 static void run_light(ev_view *view)
 {
     view->dark = !view->dark;
@@ -180,6 +204,10 @@ static const ev_act commands[] = {
     {"stage", NULL, -1, "v: section or space", is_open, run_stage},
     {"fit", NULL, -1, "f: fit the view", is_open, run_fit},
     {"detail", NULL, -1, "e: show or hide the enlarged part", is_open, run_detail},
+    {"aperture", NULL, -1, "", is_open, run_aperture},
+    {"beam", NULL, -1, "", is_open, run_beam},
+    {"cut", NULL, -1, "", is_open, run_cut},
+    {"plate", NULL, -1, "b: beam, cut", is_open, run_plate},
     {"light", NULL, -1, "d: light or dark", always, run_light},
     {"quit", NULL, -1, "q: leave", always, run_quit},
 };
@@ -201,8 +229,8 @@ static const struct {
     {SDLK_TAB, false, false, "part"},  {SDLK_1, false, false, "section"},
     {SDLK_2, false, false, "space"},   {SDLK_v, false, false, "stage"},
     {SDLK_f, false, false, "fit"},     {SDLK_e, false, false, "detail"},
-    {SDLK_d, false, false, "light"},   {SDLK_q, false, false, "quit"},
-    {SDLK_q, true, false, "quit"},
+    {SDLK_b, false, false, "plate"},   {SDLK_d, false, false, "light"},
+    {SDLK_q, false, false, "quit"},    {SDLK_q, true, false, "quit"},
 };
 
 static const char *const more_help[] = {
@@ -225,6 +253,9 @@ static bool write_help(int wanted, char *text, size_t size)
     text[0] = '\0';
     for (int i = 0; i < COMMAND_COUNT; ++i) {
         size_t length = strlen(commands[i].words);
+        if (length == 0) { /* a tab, that speaks for itself */
+            continue;
+        }
         if (used > 0 && used + length + 2 > HELP_WIDTH) {
             ++line;
             used = 0;

@@ -24,6 +24,20 @@ static void fill_fields(ev_view *view, ev_sheet *sheet)
     }
 }
 
+static void fill_plates(const ev_view *view, ev_sheet *sheet)
+{
+    const ev_model *model = &view->model;
+    for (int i = 0; model->has_beams && i < model->design.feed_count; ++i) {
+        sheet->beams[i] = &model->beams[i];
+    }
+    sheet->limit = model->has_beams ? &model->limit : NULL;
+    sheet->kept_beam = model->has_kept && model->has_kept_beam ? &model->kept_beam : NULL;
+    sheet->gain_curve = model->has_gain ? &model->gain : NULL;
+    sheet->beam_stale = ev_model_beams_stale(model);
+    sheet->cut_stale = ev_model_gain_stale(model);
+    sheet->plate = view->plate;
+}
+
 static void fill_numbers(const ev_view *view, ev_sheet *sheet)
 {
     const ev_model *model = &view->model;
@@ -59,18 +73,14 @@ static bool is_far_off(double held, double suits)
 static void fill_scales(ev_view *view, ev_sheet *sheet)
 {
     ev_sheet_scales(&view->page, sheet);
-    if (ev_view_moving(view) && !is_far_off(view->exaggeration, sheet->front_exaggeration)) {
-        sheet->front_exaggeration = view->exaggeration;
+    double *const scales[] = {&sheet->front_exaggeration, &sheet->aperture_range,
+                              &sheet->ledger_range, &sheet->beam_range, &sheet->cut_range};
+    for (size_t i = 0; i < sizeof scales / sizeof scales[0]; ++i) {
+        if (ev_view_moving(view) && !is_far_off(view->ranges[i], *scales[i])) {
+            *scales[i] = view->ranges[i];
+        }
+        view->ranges[i] = *scales[i];
     }
-    if (ev_view_moving(view) && !is_far_off(view->aperture_range, sheet->aperture_range)) {
-        sheet->aperture_range = view->aperture_range;
-    }
-    if (ev_view_moving(view) && !is_far_off(view->ledger_range, sheet->ledger_range)) {
-        sheet->ledger_range = view->ledger_range;
-    }
-    view->exaggeration = sheet->front_exaggeration;
-    view->aperture_range = sheet->aperture_range;
-    view->ledger_range = sheet->ledger_range;
 }
 
 const ev_sheet *ev_view_sheet(ev_view *view)
@@ -81,6 +91,7 @@ const ev_sheet *ev_view_sheet(ev_view *view)
     }
     memset(sheet, 0, sizeof *sheet);
     fill_numbers(view, sheet);
+    fill_plates(view, sheet);
     fill_fields(view, sheet);
     sheet->stage = view->stage;
     sheet->dark = view->dark;
@@ -125,6 +136,12 @@ static void stamp_numbers(const ev_view *view, ev_layers_input *input)
     if (model->has_kept) {
         STAMP(NUMBERS, model->kept);
     }
+    STAMP(PLATES, sheet->plate);
+    STAMP(PLATES, sheet->beam_range);
+    STAMP(PLATES, sheet->cut_range);
+    STAMP(PLATES, sheet->beam_stale);
+    STAMP(PLATES, sheet->cut_stale);
+    STAMP(PLATES, model->answers);
     STAMP(VERDICT, model->verdict);
     STAMP(VERDICT, sheet->stale);
 }
@@ -168,6 +185,7 @@ static void compute(ev_view *view)
     if (!view->model.scene) {
         return;
     }
+    view->model.wants_gain = view->plate == EV_PLATE_CUT;
     ev_model_compute(&view->model, view->stage);
     view->row_count = ev_fields_list(&view->model, view->rows);
     if (view->stage == EV_STAGE_SPACE && !view->camera_kept && !ev_view_moving(view)) {

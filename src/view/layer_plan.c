@@ -33,9 +33,14 @@ static ev_rect place_ledger(const ev_page *page)
     return page->ledger;
 }
 
-static ev_rect place_aperture(const ev_page *page)
+static ev_rect place_plate(const ev_page *page)
 {
     return page->plates[0];
+}
+
+static ev_rect place_lower_plate(const ev_page *page)
+{
+    return page->plate_count > 1 ? page->plates[1] : (ev_rect){0.0, 0.0, 0.0, 0.0};
 }
 
 static ev_rect place_gallery(const ev_page *page)
@@ -56,7 +61,20 @@ DRAW_PLAIN(verdict)
 DRAW_PLAIN(watts)
 DRAW_PLAIN(strip)
 DRAW_PLAIN(ledger)
-DRAW_PLAIN(aperture)
+
+static void draw_plate(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
+                       cairo_t *cairo)
+{
+    (void)layers;
+    ev_draw_plate(cairo, input->page, input->sheet, 0, &layer->boxes);
+}
+
+static void draw_lower_plate(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
+                             cairo_t *cairo)
+{
+    (void)layers;
+    ev_draw_plate(cairo, input->page, input->sheet, 1, &layer->boxes);
+}
 
 static void add_part_boxes(ev_boxes *boxes, const ev_layers_input *input)
 {
@@ -120,6 +138,8 @@ const ev_layer_plan ev_layer_plans[EV_LAYER_COUNT] = {
     [EV_LAYER_WATTS] = {ON(PAGE) | ON(NUMBERS) | ON(POINTED), place_watts, draw_watts},
     [EV_LAYER_STRIP] = {ON(PAGE) | ON(FIELDS) | ON(POINTED), place_strip, draw_strip},
     [EV_LAYER_LEDGER] = {ON(PAGE) | ON(NUMBERS) | ON(POINTED), place_ledger, draw_ledger},
-    [EV_LAYER_APERTURE] = {ON(PAGE) | ON(NUMBERS) | ON(POINTED), place_aperture, draw_aperture},
+    [EV_LAYER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_plate, draw_plate},
+    [EV_LAYER_LOWER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_lower_plate,
+                              draw_lower_plate},
     [EV_LAYER_GALLERY] = {ON(PAGE) | ON(GALLERY) | ON(POINTED), place_gallery, draw_gallery},
 };

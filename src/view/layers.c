@@ -9,7 +9,8 @@
 
 static bool is_shown(const ev_layers_input *input, int id)
 {
-    return (id == EV_LAYER_GALLERY) == (input->sheet == NULL);
+    bool empty = ev_layer_plans[id].place(input->page).width == 0.0;
+    return !empty && (id == EV_LAYER_GALLERY) == (input->sheet == NULL);
 }
 
 bool ev_layers_start(ev_layers *layers, ev_diagnostics *diagnostics)
@@ -130,7 +131,12 @@ static int find_outdated(ev_layers *layers, const ev_layers_input *input, int id
     for (int id = 0; id < EV_LAYER_COUNT; ++id) {
         ev_layer *layer = &layers->items[id];
         uint64_t stamp = stamp_of(input, id);
-        if (!is_shown(input, id) || layer->stamp == stamp) {
+        if (!is_shown(input, id)) {
+            layer->boxes.count = 0;
+            layer->stamp = 0;
+            continue;
+        }
+        if (layer->stamp == stamp) {
             continue;
         }
         layer->rect = widen(ev_layer_plans[id].place(input->page), input->scale);

@@ -13,7 +13,8 @@ typedef enum {
     EV_LAYER_WATTS,
     EV_LAYER_STRIP,
     EV_LAYER_LEDGER,
-    EV_LAYER_APERTURE,
+    EV_LAYER_PLATE, /* the only plate, or the upper of two */
+    EV_LAYER_LOWER_PLATE,
     EV_LAYER_GALLERY, /* the whole page, alone */
     EV_LAYER_COUNT
 } ev_layer_id;
@@ -24,6 +25,7 @@ typedef enum {
     EV_STAMP_SCENE,   /* title, frequency, unsaved, actions, notice */
     EV_STAMP_NUMBERS, /* study, kept state, scales */
     EV_STAMP_VERDICT,
+    EV_STAMP_PLATES, /* beams, gain curve, which plate */
     EV_STAMP_POINTED,
     EV_STAMP_FIELDS,
     EV_STAMP_STAGE, /* mode, zoom, pan, part in hand, loss map, camera */

@@ -44,9 +44,10 @@ static bool assign_all(const ev_scene *scene, ev_design *design, const char *con
 static void show_new(ev_model *model)
 {
     ++model->serial;
-    model->has_map = false;
+    model->has_map = model->has_beams = model->has_gain = false;
     model->map_needs = model->serial;
-    model->has_kept = false;
+    model->has_kept = model->has_kept_beam = false;
+    model->gain_axis = EV_AXIS_OUT;
     model->feed = 0;
     model->part = EV_PART_FEED;
     model->verdict_serial = 0;
@@ -173,6 +174,8 @@ void ev_model_keep(ev_model *model)
 {
     model->has_kept = !model->has_kept;
     model->kept = model->study->budget;
+    model->has_kept_beam = model->has_kept && !ev_model_beams_stale(model);
+    model->kept_beam = model->beams[model->feed];
     snprintf(model->message, sizeof model->message, "%s",
              model->has_kept ? "Kept this state to compare with" : "Forgot the kept state");
 }

@@ -29,8 +29,19 @@ typedef struct ev_model {
     unsigned map_serial; /* the design the map is about */
     unsigned map_needs;  /* the last one that changed by more than a move of the part in hand */
 
-    bool has_kept;
+    ev_beam_curve beams[EV_FEED_CAPACITY];
+    bool has_beams;
+    unsigned beams_serial;
+    ev_limit limit; /* that the side lobes of a dish this size have to keep */
+    ev_gain_curve gain;
+    bool has_gain, wants_gain; /* wanted while the Cut plate is shown */
+    unsigned gain_serial;
+    unsigned answers;       /* goes up with each beam or gain curve received */
+    ev_part_axis gain_axis; /* the one last in hand */
+
+    bool has_kept, has_kept_beam;
     ev_budget kept;
+    ev_beam_curve kept_beam;
     int feed;
     ev_part part;
     ev_worker *worker;
@@ -78,6 +89,10 @@ bool ev_model_fetch(ev_model *model);
 bool ev_model_waiting(ev_model *model);
 bool ev_model_stale(const ev_model *model);     /* the verdict */
 bool ev_model_map_stale(const ev_model *model); /* or not there yet */
+bool ev_model_beams_stale(const ev_model *model);
+bool ev_model_gain_stale(const ev_model *model); /* false while nobody wants it */
+/* The axis that the Cut plate is about. */
+void ev_model_cut_along(ev_model *model, ev_part_axis axis);
 
 /* Where the part in hand sits along an axis of its own, m. */
 double ev_model_place(const ev_model *model, ev_part part, ev_part_axis axis);

@@ -1,6 +1,6 @@
 /* All that the window knows, in one place. Functions that act on it live in files named for what
- * they do: frame.c draws it, input.c feeds it, drag.c moves things, acts.c holds the table of
- * actions, strip.c the fields, gallery.c the scenes to choose from. */
+ * they do: frame.c draws it, input.c feeds it, grab.c and drag.c move things, acts.c holds the
+ * table of actions, strip.c the fields, gallery.c the scenes to choose from. */
 #pragma once
 
 #include "view/controls.h"
@@ -81,6 +81,7 @@ typedef struct ev_view {
     ev_sheet sheet; /* what the last frame showed */
     ev_stage_mode stage;
     bool dark, detail; /* detail: the enlarged part is shown */
+    ev_plate plate;
     double zoom, pan_x, pan_y;
     ev_camera camera;
     bool camera_kept; /* turned by hand: a new size does not fit it again */
@@ -101,9 +102,9 @@ typedef struct ev_view {
     char nudged[96];     /* address or part last nudged: goes on as one change */
     double nudged_until; /* s */
 
-    double aperture_range, ledger_range, exaggeration; /* held during a drag */
-    double now;                                        /* s, of the clock: real, or the replay's */
-    bool dirty;                                        /* something to draw */
+    double ranges[5]; /* held during a drag; see frame.c */
+    double now;       /* s, of the clock: real, or the replay's */
+    bool dirty;       /* something to draw */
     bool leaving;
     const char *asked; /* how the person wanted to leave unsaved changes; NULL: not asked */
     int help;          /* line of the help to show next */
@@ -121,9 +122,9 @@ const ev_sheet *ev_view_sheet(ev_view *view);
 void ev_view_input(ev_view *view, const ev_input *input);
 void ev_view_point(ev_view *view, double x, double y);
 
-/* drag.c: from press to release. */
-extern const double ev_turn_per_pixel; /* rad of space per pixel of the hand */
+/* grab.c: a press. drag.c: what follows until the release. */
 void ev_drag_begin(ev_view *view, const ev_input *input);
+extern const double ev_turn_per_pixel; /* rad of space per pixel of the hand */
 void ev_drag_move(ev_view *view, const ev_input *input);
 void ev_drag_end(ev_view *view, const ev_input *input);
 /* Puts back what was being moved. */

@@ -1,6 +1,7 @@
 /* The worker's thread and its slots. */
 #include "view/worker.h"
 
+#include <math.h>
 #include <omp.h>
 #include <stdio.h>
 #include <stdlib.h>
@@ -19,6 +20,40 @@ struct ev_worker {
     job_slot slots[EV_JOB_COUNT];
     ev_job running; /* the thread's own copy */
 };
+
+/* The plane that most beams point apart in, 0 or a right angle from the symmetry plane. */
+static double plane_of_beams(const ev_antenna *antenna)
+{
+    double up = 0.0, across = 0.0;
+    for (int i = 0; i < antenna->feed_count; ++i) {
+        up = fmax(up, fabs(antenna->feeds[i].wanted.x - antenna->feeds[0].wanted.x));
+        across = fmax(across, fabs(antenna->feeds[i].wanted.y - antenna->feeds[0].wanted.y));
+    }
+    return across > up ? 0.5 * EV_PI : 0.0;
+}
+
+static void run_beams(ev_job *job)
+{
+    ev_antenna antenna;
+    double span = 0.0;
+    ev_antenna_build(&job->design, job->frequency, &antenna);
+    job->beams = calloc((size_t)antenna.feed_count, sizeof *job->beams);
+    job->good = job->beams != NULL;
+    for (int i = 0; i < antenna.feed_count; ++i) {
+        span = fmax(span, ev_beam_curve_span(&antenna, i));
+    }
+    for (int i = 0; job->good && i < antenna.feed_count; ++i) {
+        ev_beam_curve_compute(&antenna, i, plane_of_beams(&antenna), span, job->quality,
+                              &job->beams[i]);
+    }
+}
+
+static void run_gain(ev_job *job)
+{
+    ev_gain_curve_compute(&job->design, job->frequency, job->part, job->feed, job->axis[0],
+                          job->extent, &job->gain);
+    job->good = true;
+}
 
 static void run_map(ev_job *job)
 {
@@ -64,15 +99,13 @@ static void run_picture(ev_job *job)
 }
 
 static void (*const runners[EV_JOB_COUNT])(ev_job *) = {
-    [EV_JOB_MAP] = run_map,
-    [EV_JOB_VERDICT] = run_verdict,
-    [EV_JOB_SAVE] = run_save,
-    [EV_JOB_PICTURE] = run_picture,
+    [EV_JOB_BEAMS] = run_beams,     [EV_JOB_GAIN] = run_gain, [EV_JOB_MAP] = run_map,
+    [EV_JOB_VERDICT] = run_verdict, [EV_JOB_SAVE] = run_save, [EV_JOB_PICTURE] = run_picture,
 };
 
-/* Files first, they are what a person waits for on leaving; then map, then verdict. */
-static const ev_job_kind order[EV_JOB_COUNT] = {EV_JOB_SAVE, EV_JOB_PICTURE, EV_JOB_MAP,
-                                                EV_JOB_VERDICT};
+/* Files first, they are what a person waits for on leaving; then what is seen to lag. */
+static const ev_job_kind order[EV_JOB_COUNT] = {EV_JOB_SAVE, EV_JOB_PICTURE, EV_JOB_BEAMS,
+                                                EV_JOB_MAP,  EV_JOB_VERDICT, EV_JOB_GAIN};
 
 static int next_kind(const ev_worker *worker)
 {
@@ -102,6 +135,9 @@ static void run_slot(ev_worker *worker, int kind)
     runners[kind](&worker->running);
     SDL_LockMutex(worker->mutex);
     slot->running = false;
+    if (slot->answered) { /* nobody took the last one */
+        free(slot->answer.beams);
+    }
     slot->answered = true;
     slot->answer = worker->running;
     SDL_CondBroadcast(worker->changed);
@@ -155,6 +191,11 @@ void ev_worker_destroy(ev_worker *worker)
         SDL_CondBroadcast(worker->changed);
         SDL_UnlockMutex(worker->mutex);
         SDL_WaitThread(worker->thread, NULL);
+    }
+    for (int i = 0; i < EV_JOB_COUNT; ++i) {
+        if (worker->slots[i].answered) {
+            free(worker->slots[i].answer.beams);
+        }
     }
     SDL_DestroyCond(worker->changed);
     SDL_DestroyMutex(worker->mutex);

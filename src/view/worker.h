@@ -1,17 +1,26 @@
-/* One thread for what is too slow for a frame: loss map, verdict, PNG files, saving. A slot a kind
- * of work; of maps and verdicts the newest request wins. Answers are fetched by the window's
- * thread, which is woken by an SDL event of its own type. */
+/* One thread for what is too slow for a frame: beams, gain curve, loss map, verdict, PNG files,
+ * saving. A slot a kind of work; the newest request of a kind wins. Answers are fetched by the
+ * window's thread, which is woken by an SDL event of its own type. */
 #pragma once
 
 #include "base/diagnostic.h"
 #include "scene/scene.h"
+#include "study/beam_curve.h"
 #include "study/loss_map.h"
 #include "study/verdict.h"
 
 #include <SDL.h>
 #include <cairo.h>
 
-typedef enum { EV_JOB_MAP, EV_JOB_VERDICT, EV_JOB_SAVE, EV_JOB_PICTURE, EV_JOB_COUNT } ev_job_kind;
+typedef enum {
+    EV_JOB_BEAMS,
+    EV_JOB_GAIN,
+    EV_JOB_MAP,
+    EV_JOB_VERDICT,
+    EV_JOB_SAVE,
+    EV_JOB_PICTURE,
+    EV_JOB_COUNT
+} ev_job_kind;
 
 enum { EV_JOB_PATH_CAPACITY = 1024 };
 
@@ -21,7 +30,9 @@ typedef struct ev_job {
     double frequency;
     int feed;
     ev_part part;            /* map */
-    ev_part_axis axis[2];    /* map */
+    ev_part_axis axis[2];    /* map; gain: the first */
+    double extent;           /* gain, m */
+    ev_beam_quality quality; /* beams */
     ev_scene *scene;         /* save; nobody else touches it meanwhile */
     cairo_surface_t *pixels; /* picture; destroyed by the worker */
     char path[EV_JOB_PATH_CAPACITY];
@@ -29,7 +40,9 @@ typedef struct ev_job {
     bool good;
     ev_loss_map map;
     ev_verdict verdict;
-    char message[160]; /* save, picture: why not, when not good */
+    ev_gain_curve gain;
+    ev_beam_curve *beams; /* of each feed; malloc'd, goes to who fetches the answer */
+    char message[160];    /* save, picture: why not, when not good */
 } ev_job;
 
 typedef struct ev_worker ev_worker;

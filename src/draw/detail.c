@@ -19,18 +19,19 @@ static const ev_loss_map *usable_map(const ev_sheet *sheet)
     return map->part == EV_PART_SUB || map->feed == sheet->feed ? map : NULL;
 }
 
-/* Directions of the two axes on the page. One that points out of the section is drawn square to the
- * other. */
-static void page_axes(const ev_sheet *sheet, double axis[2][2])
+/* Directions of the two axes on the page, turned with it. One that points out of the section is
+ * drawn square to the other. */
+static void page_axes(const ev_sheet *sheet, double turn, double axis[2][2])
 {
     bool seen[2];
+    double c = cos(turn), s = sin(turn);
     for (int i = 0; i < 2; ++i) {
         ev_vec3 d =
             ev_part_axis_direction(sheet->antenna, sheet->part, sheet->feed, sheet->detail_axis[i]);
         double length = hypot(d.z, d.x);
         seen[i] = length > 0.5;
-        axis[i][0] = seen[i] ? d.z / length : 0.0;
-        axis[i][1] = seen[i] ? -d.x / length : 0.0;
+        axis[i][0] = seen[i] ? (c * d.z - s * d.x) / length : 0.0;
+        axis[i][1] = seen[i] ? -(s * d.z + c * d.x) / length : 0.0;
     }
     if (!seen[0] && !seen[1]) {
         axis[0][0] = 1.0;
@@ -39,17 +40,18 @@ static void page_axes(const ev_sheet *sheet, double axis[2][2])
     int good = seen[0] ? 0 : 1;
     if (!seen[1 - good]) {
         /* Counter-clockwise from axis 0 to axis 1, as up is from right. */
-        double turn = good == 0 ? 1.0 : -1.0;
-        axis[1 - good][0] = turn * axis[good][1];
-        axis[1 - good][1] = -turn * axis[good][0];
+        double sense = good == 0 ? 1.0 : -1.0;
+        axis[1 - good][0] = sense * axis[good][1];
+        axis[1 - good][1] = -sense * axis[good][0];
     }
 }
 
-static ev_detail make_detail(const ev_page *page, const ev_sheet *sheet)
+static ev_detail make_detail(const ev_sheet *sheet, ev_rect square, ev_detail_style style)
 {
-    ev_detail detail = {.radius = 0.5 * page->detail.width};
-    detail.x = page->detail.x + detail.radius;
-    detail.y = page->detail.y + detail.radius;
+    ev_detail detail = {
+        .radius = 0.5 * square.width, .handle = style.handle, .showing = style.showing};
+    detail.x = square.x + detail.radius;
+    detail.y = square.y + detail.radius;
     detail.loss = usable_map(sheet);
     for (int i = 0; i < 2; ++i)
         detail.place[i] = ev_part_place(sheet->design, sheet->antenna, sheet->part, sheet->feed,
@@ -62,7 +64,7 @@ static ev_detail make_detail(const ev_page *page, const ev_sheet *sheet)
         memcpy(centre, detail.loss->centre, sizeof centre);
     }
     double axis[2][2], scale = detail.radius / extent;
-    page_axes(sheet, axis);
+    page_axes(sheet, style.turn, axis);
     detail.extent = extent;
     detail.map = (ev_plot_map){
         .x0 = detail.x - scale * (centre[0] * axis[0][0] + centre[1] * axis[1][0]),
@@ -147,11 +149,11 @@ static void draw_arrow(ev_pen *pen, const ev_detail *detail, double hx, double h
     double bx, by;
     ev_plot_to_page(&detail->map, detail->loss->best[0], detail->loss->best[1], &bx, &by);
     double dx = bx - hx, dy = by - hy, distance = hypot(dx, dy);
-    if (!(distance > EV_HANDLE_RADIUS + 10.0))
+    if (!(distance > detail->handle + 10.0))
         return;
     dx /= distance;
     dy /= distance;
-    ev_pen_line(pen, hx + EV_HANDLE_RADIUS * dx, hy + EV_HANDLE_RADIUS * dy, bx - 6.0 * dx,
+    ev_pen_line(pen, hx + detail->handle * dx, hy + detail->handle * dy, bx - 6.0 * dx,
                 by - 6.0 * dy, pen->theme->ink, 1.6, 1.0);
     ev_pen_wedge(pen, bx, by, dx, dy, 9.0, 3.6, pen->theme->ink);
 }
@@ -160,15 +162,15 @@ static void draw_handle(ev_pen *pen, const ev_sheet *sheet, const ev_detail *det
                         double y)
 {
     const ev_theme *theme = pen->theme;
-    double r = EV_HANDLE_RADIUS;
+    double r = detail->handle, q = r / EV_HANDLE_RADIUS;
     ev_colour line = theme->hand_text;
     for (int i = 0; i < 4; ++i) {
         double sign = i < 2 ? 1.0 : -1.0;
         double ax = sign * detail->axis[i % 2][0], ay = sign * detail->axis[i % 2][1];
-        double tip = r + 10.5, base = r + 3.5;
+        double tip = r + 10.5 * q, base = r + 3.5 * q, half = 4.6 * q;
         cairo_move_to(pen->cairo, x + tip * ax, y + tip * ay);
-        cairo_line_to(pen->cairo, x + base * ax - 4.6 * ay, y + base * ay + 4.6 * ax);
-        cairo_line_to(pen->cairo, x + base * ax + 4.6 * ay, y + base * ay - 4.6 * ax);
+        cairo_line_to(pen->cairo, x + base * ax - half * ay, y + base * ay + half * ax);
+        cairo_line_to(pen->cairo, x + base * ax + half * ay, y + base * ay - half * ax);
         cairo_close_path(pen->cairo);
         ev_pen_colour(pen, theme->hand, 1.0);
         cairo_fill_preserve(pen->cairo);
@@ -176,11 +178,11 @@ static void draw_handle(ev_pen *pen, const ev_sheet *sheet, const ev_detail *det
         cairo_set_line_width(pen->cairo, 1.0);
         cairo_stroke(pen->cairo);
     }
-    ev_pen_circle(pen, x, y, r - 3.25, theme->hand, 6.5, 1.0);
-    ev_pen_circle(pen, x, y, r, line, 1.3, 1.0);
-    ev_pen_circle(pen, x, y, r - 6.5, line, 1.1, 1.0);
-    ev_pen_circle(pen, x, y, 2.2, theme->ink, 0.0, 1.0);
-    double reach = r + 8.0;
+    ev_pen_circle(pen, x, y, r - 3.25 * q, theme->hand, 6.5 * q, 1.0);
+    ev_pen_circle(pen, x, y, r, line, 1.3 * q, 1.0);
+    ev_pen_circle(pen, x, y, r - 6.5 * q, line, 1.1 * q, 1.0);
+    ev_pen_circle(pen, x, y, 2.2 * q, theme->ink, 0.0, 1.0);
+    double reach = r + 8.0 * q;
     ev_boxes_add(pen->boxes, EV_BOX_HANDLE,
                  sheet->part == EV_PART_SUB ? "handle.sub" : "handle.feed",
                  (ev_rect){x - reach, y - reach, 2.0 * reach, 2.0 * reach});
@@ -194,8 +196,9 @@ static void draw_content(ev_pen *pen, const ev_detail *detail, double hx, double
     if (detail->loss)
         ev_rings_draw(pen, detail, &labels);
     draw_axes(pen, detail);
-    draw_tick_words(pen, detail);
-    ev_rings_label(pen, &labels);
+    if (!detail->showing)
+        draw_tick_words(pen, detail);
+    ev_rings_label(pen, detail, &labels);
     if (detail->loss)
         draw_arrow(pen, detail, hx, hy);
 }
@@ -239,15 +242,23 @@ static void draw_circle(ev_pen *pen, const ev_sheet *sheet, const ev_detail *det
     draw_handle(pen, sheet, detail, hx, hy);
 }
 
+void ev_detail_draw(ev_pen *pen, const ev_sheet *sheet, ev_rect square, ev_detail_style style,
+                    double part_x, double part_y, ev_plot_map *map)
+{
+    ev_detail detail = make_detail(sheet, square, style);
+    ev_boxes_add(pen->boxes, EV_BOX_PLOT, "plot.detail", square);
+    if (!style.showing)
+        ev_detail_caption(pen, sheet, &detail);
+    draw_tangents(pen, &detail, part_x, part_y);
+    draw_circle(pen, sheet, &detail);
+    *map = detail.map;
+}
+
 void ev_draw_detail(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, double part_x,
                     double part_y, ev_boxes *boxes, ev_plot_map *map)
 {
     ev_pen pen = ev_pen_begin(cairo, sheet->dark, boxes, "detail", page->stage);
-    ev_detail detail = make_detail(page, sheet);
-    ev_boxes_add(boxes, EV_BOX_PLOT, "plot.detail", page->detail);
-    ev_detail_caption(&pen, sheet, &detail);
-    draw_tangents(&pen, &detail, part_x, part_y);
-    draw_circle(&pen, sheet, &detail);
-    *map = detail.map;
+    ev_detail_style style = {.handle = EV_HANDLE_RADIUS};
+    ev_detail_draw(&pen, sheet, page->detail, style, part_x, part_y, map);
     ev_pen_end(&pen);
 }

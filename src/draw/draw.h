@@ -213,6 +213,18 @@ double ev_field_drag(const ev_field *field, double dx);
  * on its part; over space the window adds it, knowing where the part is seen. */
 void ev_draw_page(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes);
 
+/* Showing mode, a page of its own: what is wrong in two lines, how much of the signal is left, the
+ * antenna as it stands (turned by the site's elevation, over the ground; level where there is no
+ * site), the wave that should leave flat, and the target to bring the part into. Boxes:
+ * "handle.feed" or "handle.sub", "part.feed.0".., "part.sub", "button.move" (Space), "button.back"
+ * (Esc), all for fingers; "plot.section", "plot.detail". Maps: as those of ev_draw_section and
+ * ev_draw_detail. Where the antenna lies depends on where the parts belong, not on where they are.
+ */
+void ev_draw_show(cairo_t *cairo, double width, double height, const ev_sheet *sheet,
+                  ev_boxes *boxes, ev_plot_map *section, ev_plot_map *detail);
+/* What suits front_exaggeration there: as with ev_sheet_scales, keep it while something moves. */
+double ev_show_exaggeration(double width, double height, const ev_sheet *sheet);
+
 /* Writes the page, as a section, to a file by its ending: .png, .svg, .pdf; `scale` is pixels of
  * the file per logical pixel (png only). False with *why (a phrase, valid until the next call in
  * this thread) when it cannot; then nothing is left at `path`. */

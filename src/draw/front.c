@@ -12,6 +12,7 @@ typedef struct front_run {
     double x[RUN_CAPACITY], y[RUN_CAPACITY];
     int count;
     bool late;
+    double width; /* px, of the line */
 } front_run;
 
 typedef struct front_extremes {
@@ -61,7 +62,7 @@ static void flush_run(ev_pen *pen, front_run *run, double base, bool even)
         for (int i = 0; i < run->count; ++i)
             cairo_line_to(pen->cairo, run->x[i], run->y[i]);
         ev_pen_colour(pen, colour, 1.0);
-        cairo_set_line_width(pen->cairo, EV_LINE_FRONT);
+        cairo_set_line_width(pen->cairo, run->width);
         cairo_set_line_cap(pen->cairo, CAIRO_LINE_CAP_ROUND);
         cairo_stroke(pen->cairo);
         cairo_set_line_cap(pen->cairo, CAIRO_LINE_CAP_BUTT);
@@ -77,11 +78,11 @@ static void add_point(front_run *run, double x, double y)
     }
 }
 
-static void draw_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *sheet, double base,
-                       double bend)
+void ev_front_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *sheet, double base,
+                    double bend, double width)
 {
     bool even = ev_is_even(largest_error(sheet), sheet);
-    front_run run = {.count = 0};
+    front_run run = {.width = width};
     double before_error = NAN, before_y = 0.0;
     for (int i = 0; i < sheet->front_count; ++i) {
         double error = sheet->front[i], x, y;
@@ -208,7 +209,7 @@ void ev_front_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet
     cairo_set_dash(pen->cairo, dashes, 2, 0.0);
     ev_pen_line(pen, base, top, base, bottom, pen->theme->second, EV_LINE_DIMENSION, 0.8);
     cairo_set_dash(pen->cairo, NULL, 0, 0.0);
-    draw_curve(pen, &section->map, sheet, base, factor * section->scale);
+    ev_front_curve(pen, &section->map, sheet, base, factor * section->scale, EV_LINE_FRONT);
     pen->strength = whole;
 
     front_extremes extremes = find_extremes(&section->map, sheet);

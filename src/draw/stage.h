@@ -45,6 +45,10 @@ ev_section ev_section_fit(const ev_page *page, const ev_sheet *sheet);
 /* The Front and its words. `floor` is the lowest page y its labels may reach. */
 void ev_front_draw(ev_pen *pen, const ev_section *section, const ev_sheet *sheet, double floor,
                    double strength);
+/* The curve alone, late and early in their colours, about the upright line at page x `base`; `bend`
+ * is pixels a metre of path error. */
+void ev_front_curve(ev_pen *pen, const ev_plot_map *map, const ev_sheet *sheet, double base,
+                    double bend, double width);
 /* A factor of 1, 2, 5 ... that bends the Front by at most `room` pixels. */
 double ev_front_factor(const ev_sheet *sheet, double scale, double room);
 double ev_front_room(const ev_page *page);

@@ -61,6 +61,10 @@ typedef struct ev_font {
 #define EV_FONT_FIELD ((ev_font){false, 19.0, 500})
 #define EV_FONT_VERDICT ((ev_font){true, 21.0, 400})
 #define EV_FONT_GAIN ((ev_font){false, 28.0, 600})
+#define EV_FONT_SHOW ((ev_font){true, 44.0, 400})
+#define EV_FONT_SHOW_SHARE ((ev_font){true, 28.0, 400})
+#define EV_FONT_SHOW_NOTE ((ev_font){false, 15.0, 400})
+#define EV_FONT_SHOW_STRONG ((ev_font){false, 16.5, 600})
 
 /* Lines. */
 #define EV_LINE_MIRROR 3.2
@@ -79,3 +83,5 @@ typedef struct ev_font {
 #define EV_FADED 0.10 /* what is not pointed at */
 #define EV_STALE 0.60 /* what is older than the settings */
 #define EV_HANDLE_RADIUS 13.0
+#define EV_HANDLE_SHOWING 22.0
+#define EV_TOUCH 44.0 /* least side of what a finger is to hit */

@@ -35,6 +35,7 @@ typedef struct ev_study_want {
     int feed;
     bool verdict;
     bool aperture;
+    bool coarse; /* aperture: every other node, the rest half-way between; for frames of a drag */
     ev_study_rays rays;
     int ray_count;
 } ev_study_want;

@@ -129,6 +129,7 @@ static void stamp_numbers(const ev_view *view, ev_layers_input *input)
     STAMP(NUMBERS, model->study_serial);
     STAMP(NUMBERS, model->want.feed);
     STAMP(NUMBERS, model->want.rays);
+    STAMP(NUMBERS, model->want.coarse);
     STAMP(NUMBERS, model->has_kept);
     STAMP(NUMBERS, sheet->front_exaggeration);
     STAMP(NUMBERS, sheet->aperture_range);
@@ -186,7 +187,7 @@ static void compute(ev_view *view)
         return;
     }
     view->model.wants_gain = view->plate == EV_PLATE_CUT;
-    ev_model_compute(&view->model, view->stage);
+    ev_model_compute(&view->model, view->stage, ev_view_moving(view));
     view->row_count = ev_fields_list(&view->model, view->rows);
     if (view->stage == EV_STAGE_SPACE && !view->camera_kept && !ev_view_moving(view)) {
         ev_space_fit(&view->model.study->antenna, &view->page, view->detail, &view->camera);
@@ -229,7 +230,7 @@ void ev_view_draw(ev_view *view)
                              .dark = view->dark,
                              .pointed = view->pointed,
                              .scale = view->window.scale,
-                             .threads = 2,
+                             .crew = view->crew,
                              .outlines = &view->space.strokes};
     stamp_page(view, &input);
     if (input.sheet) {
@@ -242,7 +243,7 @@ void ev_view_draw(ev_view *view)
                                 .sheet = input.sheet,
                                 .camera = &view->camera,
                                 .scale = view->window.scale,
-                                .threads = 2};
+                                .crew = view->crew};
         place_parts(view, &input, parts);
         ev_space_draw(&view->space, &view->layers, &space, view->window.pixel_width,
                       view->window.pixel_height);

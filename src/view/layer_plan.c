@@ -101,7 +101,7 @@ static void ink_outlines(ev_layer *layer, const ev_layers_input *input)
         .height = cairo_image_surface_get_height(layer->surface),
         .pixels = (uint32_t *)(void *)cairo_image_surface_get_data(layer->surface),
     };
-    ev_raster_draw(&raster, input->outlines->items, input->outlines->count, 1);
+    ev_raster_draw(&raster, input->outlines->items, input->outlines->count, NULL);
     cairo_surface_mark_dirty(layer->surface);
 }
 

@@ -80,8 +80,18 @@ static ev_rect widen(ev_rect rect, double scale)
                      ceil((rect.y + rect.height) * scale) / scale - top};
 }
 
-static void draw_layer(ev_layers *layers, int id, const ev_layers_input *input)
+typedef struct redrawing {
+    ev_layers *layers;
+    const ev_layers_input *input;
+    int ids[EV_LAYER_COUNT];
+} redrawing;
+
+static void draw_layer(void *data, int index)
 {
+    const redrawing *work = data;
+    ev_layers *layers = work->layers;
+    const ev_layers_input *input = work->input;
+    int id = work->ids[index];
     ev_layer *layer = &layers->items[id];
     ev_rect rect = layer->rect;
     cairo_t *cairo = cairo_create(layer->surface);
@@ -151,13 +161,11 @@ static int find_outdated(ev_layers *layers, const ev_layers_input *input, int id
 /* Regions are drawn side by side, the largest first; GL takes them one after another. */
 void ev_layers_update(ev_layers *layers, const ev_layers_input *input)
 {
-    int ids[EV_LAYER_COUNT], count = find_outdated(layers, input, ids);
-#pragma omp parallel for schedule(dynamic) num_threads(input->threads) if (count > 1)
+    redrawing work = {.layers = layers, .input = input};
+    int count = find_outdated(layers, input, work.ids);
+    ev_crew_run(input->crew, count, draw_layer, &work);
     for (int i = 0; i < count; ++i) {
-        draw_layer(layers, ids[i], input);
-    }
-    for (int i = 0; i < count; ++i) {
-        upload_layer(&layers->items[ids[i]]);
+        upload_layer(&layers->items[work.ids[i]]);
     }
     layers->redrawn = count;
 }
@@ -180,16 +188,69 @@ void ev_layers_quad(const ev_layers *layers, const ev_page *page, ev_rect rect,
     glBindVertexArray(0);
 }
 
+/* Does the image have anything in these device pixels? */
+static bool has_ink(const ev_layer *layer, int left, int top, int right, int bottom)
+{
+    const uint32_t *pixels =
+        (const uint32_t *)(const void *)cairo_image_surface_get_data(layer->surface);
+    int across = cairo_image_surface_get_stride(layer->surface) / 4;
+    for (int y = top; y < bottom; ++y) {
+        uint32_t all = 0;
+        for (int x = left; x < right; ++x) {
+            all |= pixels[(ptrdiff_t)y * across + x];
+        }
+        if (all) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static void show_part(const ev_layers *layers, const ev_layers_input *input, const ev_layer *layer,
+                      ev_rect part)
+{
+    double s = input->scale;
+    ev_rect rect = {layer->rect.x + part.x / s, layer->rect.y + part.y / s, part.width / s,
+                    part.height / s};
+    ev_layers_quad(layers, input->page, rect, &layer->texture, part);
+}
+
+/* What lies over space is mostly nothing: only the tiles with ink in them, in runs along a row. */
+static void show_inked_tiles(const ev_layers *layers, const ev_layers_input *input,
+                             const ev_layer *layer)
+{
+    enum { TILE = 48 };
+    int width = layer->texture.width, height = layer->texture.height;
+    for (int top = 0; top < height; top += TILE) {
+        int bottom = top + TILE < height ? top + TILE : height, from = -1;
+        for (int left = 0; left < width + TILE; left += TILE) {
+            int right = left + TILE < width ? left + TILE : width;
+            bool inked = left < width && has_ink(layer, left, top, right, bottom);
+            if (inked && from < 0) {
+                from = left;
+            } else if (!inked && from >= 0) {
+                int end = left < width ? left : width;
+                show_part(layers, input, layer, (ev_rect){from, top, end - from, bottom - top});
+                from = -1;
+            }
+        }
+    }
+}
+
 void ev_layers_show(ev_layers *layers, const ev_layers_input *input)
 {
     glDisable(GL_DEPTH_TEST);
     glBlendFunc(GL_ONE, GL_ONE_MINUS_SRC_ALPHA);
     for (int id = 0; id < EV_LAYER_COUNT; ++id) {
         const ev_layer *layer = &layers->items[id];
-        if (is_shown(input, id) && layer->texture.id) {
-            /* only the notes over space let something through */
-            bool clear = id == EV_LAYER_STAGE && input->sheet->stage == EV_STAGE_SPACE;
-            (clear ? glEnable : glDisable)(GL_BLEND);
+        if (!is_shown(input, id) || !layer->texture.id) {
+            continue;
+        }
+        if (id == EV_LAYER_STAGE && input->sheet->stage == EV_STAGE_SPACE) {
+            glEnable(GL_BLEND);
+            show_inked_tiles(layers, input, layer);
+        } else {
+            glDisable(GL_BLEND);
             ev_rect all = {0.0, 0.0, layer->texture.width, layer->texture.height};
             ev_layers_quad(layers, input->page, layer->rect, &layer->texture, all);
         }

@@ -58,7 +58,7 @@ typedef struct ev_layers_input {
     bool dark;
     const char *pointed;
     double scale; /* device pixels per page pixel */
-    int threads;
+    ev_crew *crew;
     const ev_strokes *outlines; /* space: device pixels from the Stage's corner */
     double part_x, part_y;      /* space: where the part in hand is seen, page pixels */
     const ev_box *parts;        /* space: handles of the parts */

@@ -198,13 +198,15 @@ void ev_model_save(ev_model *model)
     free(job);
 }
 
-bool ev_model_compute(ev_model *model, ev_stage_mode stage)
+bool ev_model_compute(ev_model *model, ev_stage_mode stage, bool moving)
 {
     bool first = model->verdict_serial == 0;
-    ev_study_want want = {.feed = model->feed, .verdict = first, .aperture = true};
+    ev_study_want want = {
+        .feed = model->feed, .verdict = first, .aperture = true, .coarse = moving};
     want.rays = stage == EV_STAGE_SPACE ? EV_STUDY_RAYS_SPACE : EV_STUDY_RAYS_SECTION;
     want.ray_count = stage == EV_STAGE_SPACE ? EV_SPACE_RAYS : EV_SECTION_RAYS;
-    bool same = want.feed == model->want.feed && want.rays == model->want.rays;
+    bool same = want.feed == model->want.feed && want.rays == model->want.rays &&
+                (want.coarse || !model->want.coarse);
     if (model->study_serial == model->serial && same && !first) {
         return false;
     }

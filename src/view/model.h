@@ -78,8 +78,9 @@ void ev_model_obey(ev_model *model);
 void ev_model_next_part(ev_model *model);
 void ev_model_select(ev_model *model, ev_part part, int feed);
 
-/* Brings the study up to date; true when it was not. */
-bool ev_model_compute(ev_model *model, ev_stage_mode stage);
+/* Brings the study up to date; true when it was not. `moving`: during a drag, with a coarser
+ * picture of the aperture; the numbers are the same. */
+bool ev_model_compute(ev_model *model, ev_stage_mode stage, bool moving);
 /* Asks the worker for what is out of date; `moving`: during a drag, when only words that are more
  * than 0.1 dB off are asked for. */
 void ev_model_ask(ev_model *model, bool moving);

@@ -274,12 +274,20 @@ static void draw_rows(ev_raster *raster, const trace *t, int top, int bottom)
     }
 }
 
-static void draw_band(ev_raster *raster, const trace *traces, int count, int band)
+typedef struct banded {
+    ev_raster *raster;
+    const trace *traces;
+    int count;
+} banded;
+
+static void draw_band(void *data, int band)
 {
+    const banded *work = data;
+    ev_raster *raster = work->raster;
     int top = band * BAND;
     int bottom = top + BAND < raster->height ? top + BAND : raster->height;
-    for (int i = 0; i < count; ++i) {
-        const trace *t = &traces[i];
+    for (int i = 0; i < work->count; ++i) {
+        const trace *t = &work->traces[i];
         int from = most(t->top, top), to = least(t->bottom, bottom);
         if (from < to) {
             draw_rows(raster, t, from, to);
@@ -301,7 +309,7 @@ static void widen_bounds(ev_raster *raster, const trace *t)
     raster->bottom = most(raster->bottom, bottom);
 }
 
-void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int threads)
+void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, ev_crew *crew)
 {
     trace *traces = count > 0 ? malloc((size_t)count * sizeof *traces) : NULL;
     if (!traces || !raster->pixels) {
@@ -315,10 +323,7 @@ void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int 
             ++kept;
         }
     }
-    int bands = (raster->height + BAND - 1) / BAND;
-#pragma omp parallel for schedule(dynamic) num_threads(threads < 1 ? 1 : threads)
-    for (int band = 0; band < bands; ++band) {
-        draw_band(raster, traces, kept, band);
-    }
+    banded work = {raster, traces, kept};
+    ev_crew_run(crew, (raster->height + BAND - 1) / BAND, draw_band, &work);
     free(traces);
 }

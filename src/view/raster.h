@@ -3,6 +3,8 @@
  * Knows nothing of antennas. */
 #pragma once
 
+#include "view/crew.h"
+
 #include <stdbool.h>
 #include <stdint.h>
 
@@ -37,8 +39,8 @@ void ev_raster_free(ev_raster *raster);
 void ev_raster_clear(ev_raster *raster);
 
 /* Blends `count` strokes over what is there. Strokes with ends that are not finite are left out.
- * `threads` < 1 means 1. */
-void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, int threads);
+ * `crew` may be NULL. */
+void ev_raster_draw(ev_raster *raster, const ev_stroke *strokes, int count, ev_crew *crew);
 
 /* A growing list of strokes. */
 typedef struct ev_strokes {

@@ -184,17 +184,23 @@ static void draw_front(const ev_space *space, const ev_ink *ink)
 }
 
 /* The dish shows each line of sight its hollow side, its back, or first the back and behind it the
- * hollow; each alone never overlaps itself. */
+ * hollow; each alone never overlaps itself. Its triangles turn left as seen from the hollow. */
 static void draw_dish_hollow(const ev_space *space, const ev_ink *ink)
 {
+    glEnable(GL_CULL_FACE);
+    glCullFace(GL_BACK);
     draw_mirror(space, ink, DISH,
                 (surface_coat){.opacity = 1.0, .grid = 0.13, .shade = 0.22, .side = 1.0});
+    glDisable(GL_CULL_FACE);
 }
 
 static void draw_dish_back(const ev_space *space, const ev_ink *ink)
 {
+    glEnable(GL_CULL_FACE);
+    glCullFace(GL_FRONT);
     draw_mirror(space, ink, DISH,
                 (surface_coat){.opacity = 0.86, .hatch_step = EV_HATCH_STEP, .side = -1.0});
+    glDisable(GL_CULL_FACE);
 }
 
 /* Subreflector and horns: opaque, hidden by each other. */
@@ -220,7 +226,7 @@ static void show_rays(ev_space *space, const ev_layers *layers, const ev_space_i
     if (!ev_raster_resize(raster, width, height)) {
         return;
     }
-    ev_raster_draw(raster, space->strokes.items, space->strokes.count, input->threads);
+    ev_raster_draw(raster, space->strokes.items, space->strokes.count, input->crew);
     space->strokes.count = 0;
     if (raster->right > raster->left) {
         ev_pixels pixels = {width,       height,        width,          raster->left,

@@ -21,8 +21,8 @@ typedef struct ev_space_input {
     const ev_page *page;
     const ev_sheet *sheet;
     const ev_camera *camera;
-    double scale; /* device pixels per page pixel */
-    int threads;  /* for the rasteriser */
+    double scale;  /* device pixels per page pixel */
+    ev_crew *crew; /* for the rasteriser */
 } ev_space_input;
 
 bool ev_space_start(ev_space *space, ev_diagnostics *diagnostics);

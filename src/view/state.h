@@ -75,6 +75,7 @@ typedef struct ev_view {
     ev_layers layers;
     ev_space space;
     ev_model model;
+    ev_crew *crew; /* two threads: this one and a helper */
     ev_gallery gallery;
 
     ev_page page;

@@ -134,6 +134,7 @@ static bool start_window(ev_view *view)
         !ev_space_start(&view->space, view->diagnostics)) {
         return fail(view, 3);
     }
+    view->crew = ev_crew_create(SDL_GetCPUCount() > 1 ? 2 : 1);
     SDL_StopTextInput();
     ev_window_title(&view->window, view->model.scene ? view->model.design.title : "");
     return true;
@@ -145,6 +146,7 @@ static void end(ev_view *view)
         ev_model_end(&view->model);
     }
     ev_gallery_free(&view->gallery);
+    ev_crew_destroy(view->crew);
     if (view->window.context) {
         ev_space_end(&view->space);
         ev_layers_end(&view->layers);

@@ -51,7 +51,7 @@ static void open_scene(ev_model *model, const char *name, char path[512])
     ev_diagnostics_init(&diagnostics);
     assert_true(ev_model_start(model));
     assert_true(ev_model_open(model, path, NULL, 0, &diagnostics));
-    assert_true(ev_model_compute(model, EV_STAGE_SECTION));
+    assert_true(ev_model_compute(model, EV_STAGE_SECTION, false));
     ev_diagnostics_clear(&diagnostics);
 }
 
@@ -77,7 +77,7 @@ static ev_field_row find_row(const ev_model *model, const char *address)
 static void settle(ev_model *model)
 {
     for (int i = 0; i < 100; ++i) {
-        ev_model_compute(model, EV_STAGE_SECTION);
+        ev_model_compute(model, EV_STAGE_SECTION, false);
         ev_model_ask(model, false);
         ev_worker_settle(model->worker);
         ev_model_fetch(model);
@@ -110,7 +110,7 @@ static void test_moves(void **state)
                 ev_design moved = ev_model_moved(&model, &model.design, (ev_part)part,
                                                  (ev_part_axis)axis, want[axis]);
                 assert_true(ev_model_try(&model, &moved, true));
-                ev_model_compute(&model, EV_STAGE_SECTION);
+                ev_model_compute(&model, EV_STAGE_SECTION, false);
                 for (int k = 0; k < EV_AXIS_COUNT; ++k) {
                     double place = ev_model_place(&model, (ev_part)part, (ev_part_axis)k);
                     double study = ev_part_place(&model.design, &model.study->antenna,
@@ -278,12 +278,12 @@ static void test_words_wait_in_a_drag(void **state)
     settle(&model);
     ev_design moved = ev_model_moved(&model, &model.design, EV_PART_FEED, EV_AXIS_OUT, 1e-4);
     ev_model_try(&model, &moved, true);
-    ev_model_compute(&model, EV_STAGE_SECTION);
+    ev_model_compute(&model, EV_STAGE_SECTION, false);
     ev_model_ask(&model, true);
     assert_false(ev_worker_busy(model.worker, EV_JOB_VERDICT));
     moved = ev_model_moved(&model, &model.design, EV_PART_FEED, EV_AXIS_OUT, 0.04);
     ev_model_try(&model, &moved, true);
-    ev_model_compute(&model, EV_STAGE_SECTION);
+    ev_model_compute(&model, EV_STAGE_SECTION, false);
     ev_model_ask(&model, true);
     ev_worker_settle(model.worker);
     assert_true(ev_model_fetch(&model));

@@ -52,7 +52,7 @@ static double ink(void)
 static double draw_one(ev_stroke one)
 {
     ev_raster_clear(&raster);
-    ev_raster_draw(&raster, &one, 1, 1);
+    ev_raster_draw(&raster, &one, 1, NULL);
     return ink();
 }
 
@@ -130,8 +130,11 @@ static void test_same_for_any_threads(void **state)
     fill_random(&strokes, 2000);
     uint64_t first = 0;
     for (int threads = 1; threads <= 8; ++threads) {
+        ev_crew *crew = ev_crew_create(threads);
+        assert_true((crew != NULL) == (threads > 1));
         ev_raster_clear(&raster);
-        ev_raster_draw(&raster, strokes.items, strokes.count, threads);
+        ev_raster_draw(&raster, strokes.items, strokes.count, crew);
+        ev_crew_destroy(crew);
         first = threads == 1 ? hash() : first;
         assert_true(hash() == first);
     }
@@ -154,7 +157,7 @@ static void test_joined_curve_has_no_gaps(void **state)
         ev_strokes_add(&strokes, one);
     }
     ev_raster_clear(&raster);
-    ev_raster_draw(&raster, strokes.items, strokes.count, 1);
+    ev_raster_draw(&raster, strokes.items, strokes.count, NULL);
     for (int i = 0; i < 3600; ++i) {
         double t = 2.0 * 3.141592653589793 * i / 3600.0,
                inside = radius * (1.0 - 0.25 * step * step / 2.0);
@@ -189,7 +192,7 @@ static void test_dashes_go_on(void **state)
     parts[1].start = 198.0F;
     parts[0].joined_end = parts[1].joined_start = true;
     ev_raster_clear(&raster);
-    ev_raster_draw(&raster, parts, 2, 1);
+    ev_raster_draw(&raster, parts, 2, NULL);
     assert_true(hash() == once);
 }
 
@@ -232,7 +235,7 @@ static void test_nasty(void **state)
         one = stroke(10.0, 10.0, 20.0, 20.0, 1.0);
         one.width = odd[i];
         ev_raster_clear(&raster);
-        ev_raster_draw(&raster, &one, 1, 1);
+        ev_raster_draw(&raster, &one, 1, NULL);
     }
     assert_true(draw_one(stroke(50.0, 50.0, 50.0, 50.0, 3.0)) == 0.0);
     assert_true(draw_one(stroke(10.0, 10.0, 20.0, 20.0, 0.0)) == 0.0);

@@ -138,11 +138,8 @@ static void build_shadows(const ev_design *design, ev_antenna *antenna)
         const ev_strut_design *strut = &design->struts[i];
         for (int k = 0; k < strut->count && shadows->strip_count < EV_SHADOW_STRIP_CAPACITY; k++)
             shadows->strips[shadows->strip_count++] =
-                (ev_strip){.angle = strut->first + 2.0 * EV_PI * k / strut->count,
-                           .half_width = 0.5 * strut->width,
-                           .from = strut->from,
-                           .to = strut->to,
-                           .strut = i};
+                ev_strip_make(strut->first + 2.0 * EV_PI * k / strut->count, strut->width,
+                              strut->from, strut->to, i);
     }
 }
 

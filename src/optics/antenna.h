@@ -24,6 +24,9 @@ typedef struct ev_sub {
     double oversize;              /* m */
     ev_vec3 shift;
     double tilt_x, tilt_y;
+    /* The tilt as images of the three axes, and the rim where it sits: rays ask for them. */
+    ev_vec3 turned[3];
+    ev_vec3 placed_centre, placed_long, placed_short, placed_normal;
 } ev_sub;
 
 typedef struct ev_feed {

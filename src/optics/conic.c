@@ -48,56 +48,76 @@ bool ev_conic_contains(const ev_conic *conic, ev_vec3 point)
     return ev_conic_side(conic, point) < 0.0 && on_sheet(conic, s);
 }
 
-static ev_vec3 gradient(const ev_conic *conic, ev_vec3 point)
+/* A ray in the conic's own terms: from the vertex, with its components along the axis. */
+typedef struct local_ray {
+    ev_vec3 o, d;
+    double os, ds;
+} local_ray;
+
+static inline local_ray localize(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction)
 {
-    ev_vec3 x = ev_vec3_sub(point, conic->vertex);
-    double e = conic->eccentricity, s = ev_vec3_dot(x, conic->axis);
-    return ev_vec3_along(ev_vec3_scale(conic->curvature, x), -1.0 - conic->curvature * e * e * s,
-                         conic->axis);
+    ev_vec3 o = ev_vec3_sub(origin, conic->vertex);
+    return (local_ray){o, direction, ev_vec3_dot(o, conic->axis),
+                       ev_vec3_dot(direction, conic->axis)};
 }
 
 /* One Newton step on f along the ray takes out what cancellation left in the closed form. */
-static double polish(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction, double t)
+static inline double polish(const ev_conic *conic, const local_ray *ray, double t)
 {
-    ev_vec3 point = ev_vec3_along(origin, t, direction);
-    double slope = ev_vec3_dot(gradient(conic, point), direction);
-    double step = ev_conic_side(conic, point) / slope;
-    return isfinite(step) && fabs(step) < 1e-6 * (fabs(t) + 1.0) ? t - step : t;
+    double c = conic->curvature, e2 = conic->eccentricity * conic->eccentricity;
+    ev_vec3 x = ev_vec3_along(ray->o, t, ray->d);
+    double s = ray->os + t * ray->ds;
+    double value = 0.5 * c * (ev_vec3_dot(x, x) - e2 * s * s) - s;
+    double slope = c * (ev_vec3_dot(x, ray->d) - e2 * s * ray->ds) - ray->ds;
+    double step = value / slope;
+    return fabs(step) < 1e-6 * (fabs(t) + 1.0) ? t - step : t;
+}
+
+/* a t^2 + 2 b t + k = 0. */
+typedef struct quadratic {
+    double a, b, k, disc;
+} quadratic;
+
+static inline quadratic quadratic_of(const ev_conic *conic, const local_ray *ray)
+{
+    double c = conic->curvature, e2 = conic->eccentricity * conic->eccentricity, ds = ray->ds;
+    /* a vanishes for a ray along the axis of a paraboloid, and has to do so from above: a rounded
+     * 1 - ds^2 below 0 would put the far crossing at the wrong end */
+    ev_vec3 across = ev_vec3_along(ray->d, -ds, conic->axis);
+    quadratic q = {.a = c * (ev_vec3_dot(across, across) + (1.0 - e2) * ds * ds),
+                   .b = c * (ev_vec3_dot(ray->o, ray->d) - e2 * ray->os * ds) - ds,
+                   .k = c * (ev_vec3_dot(ray->o, ray->o) - e2 * ray->os * ray->os) - 2.0 * ray->os};
+    q.disc = q.b * q.b - q.a * q.k;
+    return q;
 }
 
 int ev_conic_intersect(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction, double t[2])
 {
-    double c = conic->curvature, e2 = conic->eccentricity * conic->eccentricity;
-    ev_vec3 o = ev_vec3_sub(origin, conic->vertex);
-    double os = ev_vec3_dot(o, conic->axis), ds = ev_vec3_dot(direction, conic->axis);
-    /* a t^2 + 2 b t + k = 0; a vanishes for a ray along the axis of a paraboloid, and has to do so
-     * from above: a rounded 1 - ds^2 below 0 would put the far crossing at the wrong end */
-    ev_vec3 across = ev_vec3_along(direction, -ds, conic->axis);
-    double a = c * (ev_vec3_dot(across, across) + (1.0 - e2) * ds * ds);
-    double b = c * (ev_vec3_dot(o, direction) - e2 * os * ds) - ds;
-    double k = c * (ev_vec3_dot(o, o) - e2 * os * os) - 2.0 * os;
-    double disc = b * b - a * k;
-    if (!(disc >= 0.0))
+    local_ray ray = localize(conic, origin, direction);
+    quadratic form = quadratic_of(conic, &ray);
+    if (!(form.disc >= 0.0))
         return 0;
-    double q = -(b + copysign(sqrt(disc), b));
-    double roots[2] = {q / a, k / q};
-    int count = 0;
+    double q = -(form.b + copysign(sqrt(form.disc), form.b));
+    double roots[2] = {q / form.a, form.k / q};
+    int first = roots[0] > roots[1], count = 0;
     for (int i = 0; i < 2; i++) {
-        if (!isfinite(roots[i]) || !on_sheet(conic, os + roots[i] * ds))
-            continue;
-        t[count++] = polish(conic, origin, direction, roots[i]);
-    }
-    if (count == 2 && t[0] > t[1]) {
-        double swap = t[0];
-        t[0] = t[1];
-        t[1] = swap;
+        double root = roots[i ^ first];
+        if (isfinite(root) && on_sheet(conic, ray.os + root * ray.ds))
+            t[count++] = polish(conic, &ray, root);
     }
     return count;
 }
 
-ev_vec3 ev_conic_normal(const ev_conic *conic, ev_vec3 point)
+bool ev_conic_exit(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction, double *t)
 {
-    return ev_vec3_scale(-1.0, ev_vec3_unit(gradient(conic, point)));
+    local_ray ray = localize(conic, origin, direction);
+    quadratic form = quadratic_of(conic, &ray);
+    if (!(form.disc >= 0.0))
+        return false;
+    double root = sqrt(form.disc);
+    double last = form.b > 0.0 ? -form.k / (form.b + root) : (root - form.b) / form.a;
+    *t = polish(conic, &ray, last);
+    return isfinite(*t);
 }
 
 bool ev_conic_project(const ev_conic *conic, ev_vec3 toward, ev_vec3 *point)
@@ -116,5 +136,5 @@ double ev_conic_bend(const ev_conic *conic, ev_vec3 point, ev_vec3 a, ev_vec3 b)
     double e2 = conic->eccentricity * conic->eccentricity;
     double along = ev_vec3_dot(a, conic->axis) * ev_vec3_dot(b, conic->axis);
     double hessian = conic->curvature * (ev_vec3_dot(a, b) - e2 * along);
-    return hessian / ev_vec3_length(gradient(conic, point));
+    return hessian / ev_vec3_length(ev_conic_gradient(conic, point));
 }

@@ -35,8 +35,31 @@ ev_vec3 ev_conic_far_focus(const ev_conic *conic);
  * through the vertex; returns 0, 1 or 2. Every t is reported, also behind the origin. */
 int ev_conic_intersect(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction, double t[2]);
 
-/* Unit normal at a point of the surface, on the side of the near focus. */
-ev_vec3 ev_conic_normal(const ev_conic *conic, ev_vec3 point);
+/* The farther of them alone, for conics that are not hyperboloids: where the ray leaves the side of
+ * the near focus. */
+bool ev_conic_exit(const ev_conic *conic, ev_vec3 origin, ev_vec3 direction, double *t);
+
+/* Gradient of ev_conic_side; its length is 1 at the vertex. */
+static inline ev_vec3 ev_conic_gradient(const ev_conic *conic, ev_vec3 point)
+{
+    ev_vec3 x = ev_vec3_sub(point, conic->vertex);
+    double e = conic->eccentricity, s = ev_vec3_dot(x, conic->axis);
+    return ev_vec3_along(ev_vec3_scale(conic->curvature, x), -1.0 - conic->curvature * e * e * s,
+                         conic->axis);
+}
+
+/* Unit normal at a point of the surface, on the side of the near focus. Every ray asks for it. */
+static inline ev_vec3 ev_conic_normal(const ev_conic *conic, ev_vec3 point)
+{
+    return ev_vec3_scale(-1.0, ev_vec3_unit(ev_conic_gradient(conic, point)));
+}
+
+/* A direction mirrored at a point of the surface: no square root, unlike by way of the normal. */
+static inline ev_vec3 ev_conic_reflect(const ev_conic *conic, ev_vec3 point, ev_vec3 direction)
+{
+    ev_vec3 g = ev_conic_gradient(conic, point);
+    return ev_vec3_along(direction, -2.0 * ev_vec3_dot(direction, g) / ev_vec3_dot(g, g), g);
+}
 
 /* The point of the surface on the half line from the near focus through `toward`:
  * r = f (1 + e) / (1 + e cos psi). False where the half line misses the sheet (hyperboloid). */

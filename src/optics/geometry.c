@@ -62,22 +62,46 @@ static ev_vec3 turn_xy(ev_vec3 v, double tilt_x, double tilt_y)
     return ev_vec3_turn(v, ev_vec3_make(0.0, 1.0, 0.0), tilt_y);
 }
 
-static ev_vec3 unturn_xy(ev_vec3 v, double tilt_x, double tilt_y)
+static ev_vec3 turn_back(const ev_sub *sub, ev_vec3 v)
 {
-    v = ev_vec3_turn(v, ev_vec3_make(0.0, 1.0, 0.0), -tilt_y);
-    return ev_vec3_turn(v, ev_vec3_make(1.0, 0.0, 0.0), -tilt_x);
+    return ev_vec3_make(ev_vec3_dot(sub->turned[0], v), ev_vec3_dot(sub->turned[1], v),
+                        ev_vec3_dot(sub->turned[2], v));
+}
+
+static ev_vec3 turn(const ev_sub *sub, ev_vec3 v)
+{
+    ev_vec3 sum = ev_vec3_along(ev_vec3_scale(v.x, sub->turned[0]), v.y, sub->turned[1]);
+    return ev_vec3_along(sum, v.z, sub->turned[2]);
 }
 
 ev_vec3 ev_sub_place(const ev_sub *sub, ev_vec3 point)
 {
-    ev_vec3 arm = turn_xy(ev_vec3_sub(point, sub->nominal.vertex), sub->tilt_x, sub->tilt_y);
+    ev_vec3 arm = turn(sub, ev_vec3_sub(point, sub->nominal.vertex));
     return ev_vec3_add(ev_vec3_add(sub->nominal.vertex, arm), sub->shift);
 }
 
 ev_vec3 ev_sub_unplace(const ev_sub *sub, ev_vec3 point)
 {
     ev_vec3 arm = ev_vec3_sub(ev_vec3_sub(point, sub->shift), sub->nominal.vertex);
-    return ev_vec3_add(sub->nominal.vertex, unturn_xy(arm, sub->tilt_x, sub->tilt_y));
+    return ev_vec3_add(sub->nominal.vertex, turn_back(sub, arm));
+}
+
+static void place_sub(ev_sub *sub)
+{
+    static const ev_vec3 axes[3] = {{1.0, 0.0, 0.0}, {0.0, 1.0, 0.0}, {0.0, 0.0, 1.0}};
+    for (int i = 0; i < 3; i++)
+        sub->turned[i] = turn_xy(axes[i], sub->tilt_x, sub->tilt_y);
+    sub->placed = sub->nominal;
+    sub->placed.vertex = ev_sub_place(sub, sub->nominal.vertex);
+    sub->placed.axis = turn(sub, sub->nominal.axis);
+}
+
+static void place_rim(ev_sub *sub)
+{
+    sub->placed_centre = ev_sub_place(sub, sub->rim_centre);
+    sub->placed_long = turn(sub, sub->rim_long);
+    sub->placed_short = turn(sub, sub->rim_short);
+    sub->placed_normal = turn(sub, sub->rim_normal);
 }
 
 bool ev_sub_build(const ev_main_design *main, const ev_sub_design *design, ev_sub *sub)
@@ -96,10 +120,11 @@ bool ev_sub_build(const ev_main_design *main, const ev_sub_design *design, ev_su
     sub->feed_focus = ev_vec3_along(sub->prime_focus, -2.0 * half, line);
     ev_vec3 axis = hyperboloid ? line : ev_vec3_scale(-1.0, line);
     sub->nominal = ev_conic_make(sub->prime_focus, axis, half * fabs(1.0 - 1.0 / e), e);
-    sub->placed = sub->nominal;
-    sub->placed.vertex = ev_sub_place(sub, sub->nominal.vertex);
-    sub->placed.axis = turn_xy(axis, sub->tilt_x, sub->tilt_y);
-    return build_rim(main, sub);
+    place_sub(sub);
+    if (!build_rim(main, sub))
+        return false;
+    place_rim(sub);
+    return true;
 }
 
 /* Signed angle at the feed focus, in the symmetry plane, from the line to the prime focus. */
@@ -132,27 +157,29 @@ double ev_design_half_extent(const ev_design *design)
 /* Sub rim points and the test for being within it. */
 double ev_sub_inside(const ev_sub *sub, ev_vec3 point)
 {
-    ev_vec3 nominal = ev_sub_unplace(sub, point), arm = ev_vec3_sub(nominal, sub->rim_centre);
-    double u = ev_vec3_dot(arm, sub->rim_long) / (sub->semi_long + sub->oversize);
-    double v = ev_vec3_dot(arm, sub->rim_short) / (sub->semi_short + sub->oversize);
-    if (sub->shape == EV_SUB_ELLIPSOID && !on_mirror_half(sub, nominal))
+    ev_vec3 arm = ev_vec3_sub(point, sub->placed_centre);
+    double u = ev_vec3_dot(arm, sub->placed_long) / (sub->semi_long + sub->oversize);
+    double v = ev_vec3_dot(arm, sub->placed_short) / (sub->semi_short + sub->oversize);
+    if (sub->shape == EV_SUB_ELLIPSOID &&
+        ev_vec3_dot(ev_conic_normal(&sub->placed, point), sub->placed_normal) <= 0.0)
         return -1.0;
-    return 1.0 - hypot(u, v);
+    return 1.0 - sqrt(u * u + v * v);
 }
 
 ev_vec3 ev_sub_point(const ev_sub *sub, double r, double t)
 {
-    ev_vec3 foot = ev_vec3_along(sub->rim_centre, r * cos(t) * (sub->semi_long + sub->oversize),
-                                 sub->rim_long);
-    foot = ev_vec3_along(foot, r * sin(t) * (sub->semi_short + sub->oversize), sub->rim_short);
+    double along = r * cos(t) * (sub->semi_long + sub->oversize);
+    double aside = r * sin(t) * (sub->semi_short + sub->oversize);
+    ev_vec3 foot = ev_vec3_along(sub->placed_centre, along, sub->placed_long);
+    foot = ev_vec3_along(foot, aside, sub->placed_short);
     double roots[2];
-    int count = ev_conic_intersect(&sub->nominal, foot, sub->rim_normal, roots);
+    int count = ev_conic_intersect(&sub->placed, foot, sub->placed_normal, roots);
     for (int i = 0; i < count; i++) {
-        ev_vec3 point = ev_vec3_along(foot, roots[i], sub->rim_normal);
-        if (on_mirror_half(sub, point))
-            return ev_sub_place(sub, point);
+        ev_vec3 point = ev_vec3_along(foot, roots[i], sub->placed_normal);
+        if (ev_vec3_dot(ev_conic_normal(&sub->placed, point), sub->placed_normal) > 0.0)
+            return point;
     }
-    return ev_sub_place(sub, foot);
+    return foot;
 }
 
 ev_vec3 ev_sub_rim_point(const ev_sub *sub, double t)

@@ -4,20 +4,33 @@
 
 static bool inside_outline(const ev_outline *outline, double x, double y)
 {
-    vec2 q = to_circle(outline, x - outline->x, y - outline->y);
-    return q.x * q.x + q.y * q.y < 1.0;
+    double dx = x - outline->x, dy = y - outline->y;
+    double det = outline->ux * outline->vy - outline->uy * outline->vx;
+    double p = dx * outline->vy - dy * outline->vx, q = dy * outline->ux - dx * outline->uy;
+    return p * p + q * q < det * det;
+}
+
+ev_strip ev_strip_make(double angle, double width, double from, double to, int strut)
+{
+    return (ev_strip){.angle = angle,
+                      .cos_angle = cos(angle),
+                      .sin_angle = sin(angle),
+                      .half_width = 0.5 * width,
+                      .from = from,
+                      .to = to,
+                      .strut = strut};
 }
 
 static bool inside_strip(const ev_strip *strip, double dx, double dy, double r)
 {
-    double c = cos(strip->angle), s = sin(strip->angle);
+    double c = strip->cos_angle, s = strip->sin_angle;
     return r >= strip->from && r <= strip->to && dx * c + dy * s > 0.0 &&
            fabs(dy * c - dx * s) < strip->half_width;
 }
 
 ev_fate ev_shadow_at(const ev_shadows *shadows, double x, double y)
 {
-    double dx = x - shadows->centre_x, r = hypot(dx, y);
+    double dx = x - shadows->centre_x, r = sqrt(dx * dx + y * y);
     if (!(r >= shadows->hole_radius && r <= shadows->radius))
         return EV_FATE_PAST_MAIN;
     if (shadows->has_sub && inside_outline(&shadows->sub, x, y))
@@ -56,7 +69,7 @@ ev_line ev_shadow_line(const ev_shadows *shadows, int obstacle, double u)
         return (ev_line){outline->x, outline->y, c * outline->ux + s * outline->vx,
                          c * outline->uy + s * outline->vy};
     }
-    double angle = strip_at(shadows, obstacle)->angle, c = cos(angle), s = sin(angle);
+    double c = strip_at(shadows, obstacle)->cos_angle, s = strip_at(shadows, obstacle)->sin_angle;
     return (ev_line){shadows->centre_x - u * s, u * c, c, s};
 }
 
@@ -68,8 +81,8 @@ double ev_shadow_line_through(const ev_shadows *shadows, int obstacle, double x,
         double u = atan2(q.y, q.x);
         return u < 0.0 ? u + 2.0 * EV_PI : u;
     }
-    double angle = strip_at(shadows, obstacle)->angle;
-    return y * cos(angle) - (x - shadows->centre_x) * sin(angle);
+    const ev_strip *strip = strip_at(shadows, obstacle);
+    return y * strip->cos_angle - (x - shadows->centre_x) * strip->sin_angle;
 }
 
 double ev_shadow_scale(const ev_shadows *shadows, int obstacle)

@@ -31,7 +31,8 @@ typedef struct ev_outline {
 } ev_outline;
 
 typedef struct ev_strip {
-    double angle; /* rad, about the aperture centre */
+    double angle;                /* rad, about the aperture centre */
+    double cos_angle, sin_angle; /* its direction: every ray asks for it */
     double half_width, from, to;
     int strut; /* index into design.struts */
 } ev_strip;
@@ -45,6 +46,8 @@ typedef struct ev_shadows {
     ev_strip strips[EV_SHADOW_STRIP_CAPACITY];
     int strip_count;
 } ev_shadows;
+
+ev_strip ev_strip_make(double angle, double width, double from, double to, int strut);
 
 /* Fate of a point of the aperture plane: aperture, past_main (hole or outside), or a shadow. */
 ev_fate ev_shadow_at(const ev_shadows *shadows, double x, double y);

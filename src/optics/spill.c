@@ -81,11 +81,10 @@ static double density(const ev_antenna *antenna, int index, double r, double t)
 {
     const ev_sub *sub = &antenna->sub;
     sub_ray ray = reach(antenna, index, r, t);
-    /* area on the surface over area on the rim plane: 1 / |n . rim normal|, as designed */
-    ev_vec3 level = ev_conic_normal(&sub->nominal, ev_sub_unplace(sub, ray.q));
+    /* area on the surface over area on the rim plane: 1 / |n . rim normal| */
     double plane = (sub->semi_long + sub->oversize) * (sub->semi_short + sub->oversize);
     double solid = fabs(ev_vec3_dot(ray.out, ray.normal)) / (ray.distance * ray.distance) * plane /
-                   fabs(ev_vec3_dot(level, sub->rim_normal));
+                   fabs(ev_vec3_dot(ray.normal, sub->placed_normal));
     return ev_feed_launch(antenna, index, ray.out).level * solid / (4.0 * EV_PI);
 }
 
@@ -93,12 +92,12 @@ static double density(const ev_antenna *antenna, int index, double r, double t)
  * where it leaves the paraboloid's inside: the farther crossing. */
 static double miss(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
 {
-    double t[2];
-    int count = ev_conic_intersect(&antenna->main, from, direction, t);
-    if (count == 0 || t[count - 1] <= 0.0)
+    double t;
+    if (!ev_conic_exit(&antenna->main, from, direction, &t) || t <= 0.0)
         return 1.0;
-    ev_vec3 hit = ev_vec3_along(from, t[count - 1], direction);
-    return hypot(hit.x - antenna->offset, hit.y) / antenna->radius - 1.0;
+    ev_vec3 hit = ev_vec3_along(from, t, direction);
+    double dx = hit.x - antenna->offset;
+    return sqrt(dx * dx + hit.y * hit.y) / antenna->radius - 1.0;
 }
 
 /* Conditions on the rim disc. */

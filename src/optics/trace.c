@@ -40,37 +40,46 @@ static double shadow_height(const ev_antenna *antenna, ev_fate fate, double x, d
     return foot + fmin(1.0, fmax(0.0, part)) * fmax(top - foot, 0.0);
 }
 
-/* The nearest hit in front that lies within the sub's rim. */
-static bool meet_sub(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction, ev_vec3 *hit)
+static bool within_sub(const ev_sub *sub, ev_vec3 point)
+{
+    if (sub->shape == EV_SUB_ELLIPSOID)
+        return ev_sub_inside(sub, point) >= -1e-10;
+    ev_vec3 arm = ev_vec3_sub(point, sub->placed_centre);
+    double a = sub->semi_long + sub->oversize, b = sub->semi_short + sub->oversize;
+    double u = b * ev_vec3_dot(arm, sub->placed_long), v = a * ev_vec3_dot(arm, sub->placed_short);
+    return u * u + v * v <= a * a * b * b * (1.0 + 2e-10);
+}
+
+/* The nearest hit in front that lies within the sub's rim; its distance, or NaN. */
+static double meet_sub(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
 {
     double t[2];
     int count = ev_conic_intersect(&antenna->sub.placed, from, direction, t);
-    for (int i = 0; i < count; i++) {
-        *hit = ev_vec3_along(from, t[i], direction);
-        if (t[i] > 1e-9 && ev_sub_inside(&antenna->sub, *hit) >= -1e-10)
-            return true;
-    }
-    return false;
+    for (int i = 0; i < count; i++)
+        if (t[i] > 1e-9 && within_sub(&antenna->sub, ev_vec3_along(from, t[i], direction)))
+            return t[i];
+    return NAN;
 }
 
 /* A ray meets the front of the main reflector where it leaves the paraboloid's inside: at the
- * farther crossing. */
-static bool meet_main(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction, ev_vec3 *hit)
+ * farther crossing. Its distance, or NaN. */
+static double meet_main(const ev_antenna *antenna, ev_vec3 from, ev_vec3 direction)
 {
-    double t[2];
-    int count = ev_conic_intersect(&antenna->main, from, direction, t);
-    if (count == 0 || t[count - 1] <= 1e-9)
-        return false;
-    *hit = ev_vec3_along(from, t[count - 1], direction);
-    return hypot(hit->x - antenna->offset, hit->y) <= antenna->radius * (1.0 + 1e-12);
+    double t, reach = antenna->radius * (1.0 + 1e-12);
+    if (!ev_conic_exit(&antenna->main, from, direction, &t) || t <= 1e-9)
+        return NAN;
+    double x = from.x + t * direction.x - antenna->offset, y = from.y + t * direction.y;
+    return x * x + y * y <= reach * reach ? t : NAN;
 }
 
-static void add_point(ev_ray *ray, ev_vec3 point)
+/* Walks `t` on along the ray and turns it at the mirror there. */
+static void walk(const ev_conic *mirror, double t, ev_ray *ray)
 {
-    ev_vec3 last = ray->points[ray->point_count - 1];
-    if (ray->fate != EV_FATE_PAST_SUB)
-        ray->path += ev_vec3_length(ev_vec3_sub(point, last));
-    ray->points[ray->point_count++] = point;
+    ev_vec3 hit = ev_vec3_along(ray->points[ray->point_count - 1], t, ray->leaving);
+    ray->points[ray->point_count++] = hit;
+    ray->path += t;
+    if (mirror)
+        ray->leaving = ev_conic_reflect(mirror, hit, ray->leaving);
 }
 
 /* From the main reflector to the plane z = F, or to what stands in the way. */
@@ -84,37 +93,51 @@ static void leave_main(const ev_antenna *antenna, ev_ray *ray)
     ray->path_error = ray->path - ev_vec3_dot(antenna->feeds[ray->feed].wanted, hit);
     if (ray->fate != EV_FATE_APERTURE)
         height = shadow_height(antenna, ray->fate, hit.x, hit.y);
-    ev_vec3 normal = ev_conic_normal(&antenna->main, hit);
-    ray->leaving = ev_vec3_reflect(ray->leaving, normal);
+    ray->leaving = ev_conic_reflect(&antenna->main, hit, ray->leaving);
     double t = ray->leaving.z > 1e-6 ? (height - hit.z) / ray->leaving.z : 0.0;
-    ray->points[ray->point_count++] = ev_vec3_along(hit, fmax(t, 0.0), ray->leaving);
+    ray->points[ray->point_count++] = ev_vec3_along(hit, t > 0.0 ? t : 0.0, ray->leaving);
+}
+
+/* Written member by member: clearing the whole of it first would take longer than a mirror. */
+static void begin(const ev_antenna *antenna, int feed, ev_vec3 direction, ev_ray *ray)
+{
+    ray->feed = feed;
+    ray->fate = antenna->dual ? EV_FATE_PAST_SUB : EV_FATE_PAST_MAIN;
+    ray->power = 0.0;
+    ray->direction = ray->leaving = direction;
+    ray->points[0] = antenna->feeds[feed].position;
+    for (int i = 1; i < EV_RAY_POINT_CAPACITY; i++)
+        ray->points[i] = (ev_vec3){0.0, 0.0, 0.0};
+    ray->point_count = 1;
+    ray->path = 0.0;
+    ray->path_error = NAN;
+}
+
+static void trace(const ev_antenna *antenna, int feed, ev_vec3 direction, ev_ray *ray)
+{
+    begin(antenna, feed, direction, ray);
+    if (antenna->dual) {
+        double t = meet_sub(antenna, ray->points[0], direction);
+        if (isnan(t)) {
+            ray->path = NAN;
+            return;
+        }
+        ray->fate = EV_FATE_PAST_MAIN;
+        walk(&antenna->sub.placed, t, ray);
+    }
+    double t = meet_main(antenna, ray->points[ray->point_count - 1], ray->leaving);
+    if (isnan(t)) {
+        ray->path = NAN;
+        return;
+    }
+    walk(NULL, t, ray);
+    leave_main(antenna, ray);
 }
 
 ev_ray ev_trace(const ev_antenna *antenna, int feed, ev_vec3 direction)
 {
-    ev_ray ray = {.feed = feed,
-                  .fate = EV_FATE_PAST_MAIN,
-                  .direction = direction,
-                  .leaving = direction,
-                  .points = {antenna->feeds[feed].position},
-                  .point_count = 1,
-                  .path_error = NAN};
-    ev_vec3 hit;
-    if (antenna->dual) {
-        if (!meet_sub(antenna, ray.points[0], direction, &hit)) {
-            ray.fate = EV_FATE_PAST_SUB;
-            ray.path = NAN;
-            return ray;
-        }
-        add_point(&ray, hit);
-        ray.leaving = ev_vec3_reflect(direction, ev_conic_normal(&antenna->sub.placed, hit));
-    }
-    if (!meet_main(antenna, ray.points[ray.point_count - 1], ray.leaving, &hit)) {
-        ray.path = NAN;
-        return ray;
-    }
-    add_point(&ray, hit);
-    leave_main(antenna, &ray);
+    ev_ray ray;
+    trace(antenna, feed, direction, &ray);
     return ray;
 }
 
@@ -166,7 +189,7 @@ int ev_trace_fan(const ev_antenna *antenna, int feed, int count, ev_ray *rays)
 #pragma omp parallel for schedule(static)
     for (int i = 0; i < count; i++) {
         double theta = angle_of(&source->pattern, cumulative, (i + 0.5) / count);
-        rays[i] = ev_trace(antenna, feed, direction_at(source, theta, golden * i));
+        trace(antenna, feed, direction_at(source, theta, golden * i), &rays[i]);
         rays[i].power = 1.0 / count;
     }
     return count;

@@ -105,8 +105,7 @@ static void shadows_lie_where_their_outlines_are(void **state)
     plate_picture *picture = calloc(1, sizeof *picture);
     ev_shadows *shadows = &s->antenna.shadows;
     fill_field(s, 0.0, 0.0);
-    shadows->strips[0] =
-        ev_strip_make(0.5 * EV_PI, 0.04, 0.1, 3.0, 0);
+    shadows->strips[0] = ev_strip_make(0.5 * EV_PI, 0.04, 0.1, 3.0, 0);
     shadows->strip_count = 1;
     shadows->has_sub = true;
     shadows->sub = (ev_outline){.x = 0.2, .y = -0.1, .ux = 0.06, .vy = 0.09};

@@ -52,8 +52,7 @@ static void test_strut(void **state)
     (void)state;
     const double width = 0.03, angle = 0.6;
     ev_shadows shadows = {.radius = 1.0, .strip_count = 1};
-    shadows.strips[0] =
-        (ev_strip){.angle = angle, .half_width = 0.5 * width, .from = 0.1, .to = 0.9};
+    shadows.strips[0] = ev_strip_make(angle, width, 0.1, 0.9, 0);
     gsl_integration_workspace *work = gsl_integration_workspace_alloc(200);
     for (double u = 2.0; u < 2000.0; u *= 2.7)
         for (double turn = 0.0; turn < 3.0; turn += 0.7) {

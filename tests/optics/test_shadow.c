@@ -20,8 +20,7 @@ static ev_outline disc(double x, double y, double radius)
 
 static void add_strip(ev_shadows *shadows, double angle, double width, double from, double to)
 {
-    shadows->strips[shadows->strip_count++] =
-        (ev_strip){.angle = angle, .half_width = 0.5 * width, .from = from, .to = to};
+    shadows->strips[shadows->strip_count++] = ev_strip_make(angle, width, from, to, 0);
 }
 
 typedef struct sweep {

@@ -1,7 +1,7 @@
 /* The Strip: the parameters in hand, each a value over a tape that slides under a fixed mark. Also
  * tells the window which byte of an edited text lies under the pointer, and what a drag is worth.
  */
-#include "draw/pen.h"
+#include "draw/typing.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -25,12 +25,6 @@ static ev_rect field_place(const ev_page *page, int field)
 static double value_baseline(const ev_page *page)
 {
     return page->strip.y + 0.5 * page->strip.height + 5.0;
-}
-
-int ev_field_byte_at(const ev_page *page, const ev_sheet *sheet, int field, double x)
-{
-    ev_rect place = field_place(page, field);
-    return ev_text_index(sheet->fields[field].edit_text, EV_FONT_FIELD, x - place.x);
 }
 
 double ev_field_drag(const ev_field *field, double dx)
@@ -69,33 +63,24 @@ static void draw_tape(ev_pen *pen, const ev_field *field, double x, double top)
     ev_pen_wedge(pen, centre + away, top + 10.5, 0.0, -1.0, 5.0, 4.0, pen->theme->second);
 }
 
-static void draw_edit(ev_pen *pen, const ev_field *field, const char *name, ev_rect place,
-                      double baseline)
+static ev_typing make_typing(const ev_field *field, const char *name, ev_rect place,
+                             double baseline)
 {
-    ev_rect line = {place.x - 6.0, baseline - 20.0, place.width + 6.0, 27.0};
-    ev_pen_fill(pen, line, 3.0, pen->theme->ground, 1.0);
-    ev_pen_frame(pen, line, 3.0, field->complaint[0] ? pen->theme->past_main : pen->theme->ink, 1.4,
-                 1.0);
-    double caret = ev_text_caret(field->edit_text, EV_FONT_FIELD, field->edit_caret);
-    double anchor = ev_text_caret(field->edit_text, EV_FONT_FIELD, field->edit_anchor);
-    cairo_save(pen->cairo);
-    cairo_rectangle(pen->cairo, line.x, line.y, line.width, line.height);
-    cairo_clip(pen->cairo);
-    if (caret != anchor)
-        ev_pen_fill(
-            pen,
-            (ev_rect){place.x + fmin(caret, anchor), baseline - 17.0, fabs(caret - anchor), 22.0},
-            0.0, pen->theme->hand, 0.6);
-    ev_text(pen, (ev_words){.name = name,
-                            .string = field->edit_text,
-                            .font = EV_FONT_FIELD,
-                            .colour = pen->theme->ink,
-                            .x = place.x,
-                            .width = place.width - 4.0,
-                            .baseline = baseline});
-    ev_pen_line(pen, place.x + caret, baseline - 17.0, place.x + caret, baseline + 5.0,
-                pen->theme->ink, 1.4, 1.0);
-    cairo_restore(pen->cairo);
+    return (ev_typing){.name = name,
+                       .text = field->edit_text,
+                       .font = EV_FONT_FIELD,
+                       .caret = field->edit_caret,
+                       .anchor = field->edit_anchor,
+                       .wrong = field->complaint[0],
+                       .frame = {place.x - 6.0, baseline - 20.0, place.width + 6.0, 27.0},
+                       .x = place.x,
+                       .baseline = baseline};
+}
+
+int ev_field_byte_at(const ev_page *page, const ev_sheet *sheet, int field, double x)
+{
+    ev_typing typing = make_typing(&sheet->fields[field], "", field_place(page, field), 0.0);
+    return ev_typing_index(&typing, x);
 }
 
 static void draw_value(ev_pen *pen, const ev_sheet *sheet, const ev_field *field, const char *box,
@@ -164,8 +149,9 @@ static void draw_field(ev_pen *pen, const ev_page *page, const ev_sheet *sheet, 
                             .baseline = baseline - 28.0,
                             .least = EV_LEAST_TYPE});
     snprintf(name, sizeof name, "text.%.70s.edit", box);
+    ev_typing typing = make_typing(field, name, place, baseline);
     if (field->editing)
-        draw_edit(pen, field, name, place, baseline);
+        ev_typing_draw(pen, &typing);
     else
         draw_value(pen, sheet, field, box, place, baseline);
     if (!field->complaint[0])

@@ -47,6 +47,11 @@ build_with() {
         -DEVENPATH_WERROR=ON "$@" && cmake --build "$builds/$name"
 }
 
+build_fuzzer() {
+    cmake -S "$top" -B "$builds/fuzz" -G Ninja -DCMAKE_C_COMPILER=clang -DEVENPATH_WERROR=ON \
+        -DEVENPATH_FUZZ=ON -DEVENPATH_SANITIZE=ON && cmake --build "$builds/fuzz" --target fuzz_scene
+}
+
 fuzz() {
     rm -rf "$builds/corpus" && mkdir -p "$builds/corpus" &&
         "$builds/fuzz/tests/fuzz_scene" -max_total_time=60 -max_len=8192 -timeout=20 \
@@ -66,7 +71,7 @@ export ASAN_OPTIONS=detect_leaks=1 UBSAN_OPTIONS=print_stacktrace=1
 export LSAN_OPTIONS="suppressions=$top/tests/support/leaks.txt:print_suppressions=0"
 make_and_test gcc gcc -DEVENPATH_BENCHMARKS=ON
 make_and_test clang clang -DEVENPATH_SANITIZE=ON
-step "build, fuzzer" build_with fuzz clang -DEVENPATH_FUZZ=ON -DEVENPATH_SANITIZE=ON
+step "build, fuzzer" build_fuzzer
 step "a minute of fuzzing the scene reader" fuzz
 step "clang-format" formatted
 step "clang-tidy" tidy

@@ -160,7 +160,7 @@ typedef enum {
     EV_PROBLEM_DEPTH_WITH_OFFSET, /* depth fixes the focal length of symmetric dishes only */
     EV_PROBLEM_SUB_SHAPE,      /* eccentricity or magnification against the shape: value[0] = e */
     EV_PROBLEM_SUB_IMPOSSIBLE, /* no such conic: the two given do not meet */
-    EV_PROBLEM_SUB_OVERSIZE, /* the conic is not that wide; value[0] = oversize (m) */
+    EV_PROBLEM_SUB_OVERSIZE,   /* the conic is not that wide; value[0] = oversize (m) */
     EV_PROBLEM_SUB_LARGER_THAN_DISH,   /* value: sub diameter, dish diameter (m) */
     EV_PROBLEM_SUB_TILT_ON_SYMMETRIC,  /* axis_tilt without an offset */
     EV_PROBLEM_SUB_DIAMETER_ON_OFFSET, /* the rim of an offset sub follows from the main rim */

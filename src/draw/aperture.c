@@ -25,7 +25,7 @@ static plate_plan make_plan(const ev_page *page, const ev_sheet *sheet, int figu
     ev_rect place = ev_plate_place(page, EV_PLATE_APERTURE);
     double wide = place.width - 46.0, head = ev_plate_head(page), high = place.height - head;
     double below = (figure_count + 1) / 2 * figure_pitch + 20.0;
-    double side_room = fmin(204.0 + 0.1 * (place.width - 392.0), 236.0);
+    double side_room = fmin(fmax(204.0 + 0.1 * (place.width - 392.0), 204.0), 236.0);
     double beside_diameter = fmin(wide - side_room, high - 13.0);
     double below_diameter = fmin(wide - legend_room, high - below);
     plate_plan plan = {.beside = beside_diameter > below_diameter};

@@ -129,6 +129,7 @@ typedef struct ev_sheet {
     bool unsaved, can_undo, can_redo, detail, grabbed, stale;
     char pointed[80]; /* name of the hot box under the pointer, or "" */
     char notice[160]; /* one line of news: "Undid: feed out", or "" */
+    char date[32];    /* of a hand-out, as people write it; "" leaves it out */
     ev_field fields[EV_FIELD_CAPACITY];
     int field_count;
     double zoom;         /* section: 1 = fit */
@@ -225,9 +226,14 @@ void ev_draw_show(cairo_t *cairo, double width, double height, const ev_sheet *s
 /* What suits front_exaggeration there: as with ev_sheet_scales, keep it while something moves. */
 double ev_show_exaggeration(double width, double height, const ev_sheet *sheet);
 
-/* Writes the page, as a section, to a file by its ending: .png, .svg, .pdf; `scale` is pixels of
- * the file per logical pixel (png only). False with *why (a phrase, valid until the next call in
- * this thread) when it cannot; then nothing is left at `path`. */
+/* A page to hand out: as a section, nothing to press, the date and the cautions that apply at its
+ * foot. */
+void ev_draw_handout(cairo_t *cairo, double width, double height, const ev_sheet *sheet,
+                     ev_boxes *boxes);
+
+/* Writes that page to a file by its ending: .png, .svg, .pdf; `scale` is pixels of the file per
+ * logical pixel (png only). False with *why (a phrase, valid until the next call in this thread)
+ * when it cannot; then nothing is left at `path`. */
 bool ev_picture_write(const char *path, double width, double height, double scale,
                       const ev_sheet *sheet, const char **why);
 

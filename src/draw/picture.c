@@ -52,17 +52,11 @@ static cairo_surface_t *make_surface(file_kind kind, double width, double height
 static void draw_sheet(cairo_surface_t *surface, double width, double height, double scale,
                        const ev_sheet *sheet)
 {
-    ev_sheet section = *sheet;
-    section.stage = EV_STAGE_SECTION;
-    section.paper = true;
-    section.action_count = 0;
-    section.pointed[0] = 0;
-    ev_page page = ev_page_layout(width, height);
     ev_boxes *boxes = ev_allocate(sizeof *boxes);
     boxes->count = 0;
     cairo_t *cairo = cairo_create(surface);
     cairo_scale(cairo, scale, scale);
-    ev_draw_page(cairo, &page, &section, boxes);
+    ev_draw_handout(cairo, width, height, sheet, boxes);
     cairo_destroy(cairo);
     free(boxes);
 }

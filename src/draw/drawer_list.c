@@ -79,7 +79,7 @@ bool ev_search_matches(const char *search, const char *text)
 
 /* A group: rows of one owner whose name starts so; `index` of which feed or strut. */
 typedef struct group {
-    char title[64];
+    char title[80];
     const char *start;
     ev_owner owner;
     int index;

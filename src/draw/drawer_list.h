@@ -9,7 +9,7 @@ typedef enum { EV_ITEM_HEAD, EV_ITEM_ROW, EV_ITEM_BUTTON } ev_item_kind;
 typedef struct ev_drawer_item {
     ev_item_kind kind;
     ev_parameter_ref ref;   /* rows */
-    char title[64];         /* heads and buttons */
+    char title[80];         /* heads and buttons */
     char button[2][24];     /* names: "copy.feed.0", "remove.feed.0"; "" for none */
     double y, height;       /* px from the list's top */
     bool is_derived;        /* follows from others at present */

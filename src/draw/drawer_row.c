@@ -80,7 +80,7 @@ static void draw_head(ev_pen *pen, const ev_drawer *drawer, const ev_drawer_fram
         if (name[0])
             end = draw_words_button(pen, drawer, name, words, end, baseline) - 14.0;
     }
-    char name[80];
+    char name[96];
     snprintf(name, sizeof name, "text.group.%s", item->title);
     ev_text(pen, (ev_words){.name = name,
                             .string = item->title,

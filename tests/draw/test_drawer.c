@@ -1,7 +1,7 @@
 /* The drawer of all settings: every row that applies is there once, with the value the design has;
  * marks, choices and buttons as the design stands; search, scrolling and typing. */
 #include "draw/drawer_list.h"
-#include "sheet.h"
+#include "places.h"
 
 #include <math.h>
 
@@ -24,24 +24,8 @@ static void draw(const ev_sheet *sheet, const ev_drawer *drawer, double width, d
 
 static void check_texts(const char *what, const ev_boxes *boxes)
 {
-    for (int i = 0; i < boxes->count; ++i) {
-        const ev_box *a = &boxes->items[i];
-        if (a->kind != EV_BOX_TEXT)
-            continue;
-        if (a->rect.x < a->within.x - 0.75 || a->rect.y < a->within.y - 0.75 ||
-            a->rect.x + a->rect.width > a->within.x + a->within.width + 0.75 ||
-            a->rect.y + a->rect.height > a->within.y + a->within.height + 0.75)
-            fail_msg("%s: %s \"%s\" is not inside its place", what, a->name, a->text);
-        for (int k = 0; k < i; ++k) {
-            const ev_box *b = &boxes->items[k];
-            if (b->kind == EV_BOX_TEXT && a->rect.x + 1.0 < b->rect.x + b->rect.width &&
-                b->rect.x + 1.0 < a->rect.x + a->rect.width &&
-                a->rect.y + 1.0 < b->rect.y + b->rect.height &&
-                b->rect.y + 1.0 < a->rect.y + a->rect.height)
-                fail_msg("%s: %s \"%s\" lies on %s \"%s\"", what, a->name, a->text, b->name,
-                         b->text);
-        }
-    }
+    check_inside(what, boxes);
+    check_apart(what, boxes);
     assert_in_range(boxes->count, 20, EV_BOX_CAPACITY - 1);
 }
 

@@ -1,72 +1,12 @@
 /* The whole page over every scene: text inside its place and apart from other text, boxes where
  * the window looks for them, numbers drawn as the budget has them, nothing blank. */
 #include "draw/pen.h"
-#include "sheet.h"
+#include "places.h"
 
 #include <math.h>
 
 static const double sizes[][2] = {{1280.0, 800.0}, {1100.0, 700.0}, {2560.0, 1440.0}};
 enum { SIZE_COUNT = sizeof sizes / sizeof sizes[0] };
-
-static bool lies_within(ev_rect inner, ev_rect outer)
-{
-    double slack = 0.75;
-    return inner.x >= outer.x - slack && inner.y >= outer.y - slack &&
-           inner.x + inner.width <= outer.x + outer.width + slack &&
-           inner.y + inner.height <= outer.y + outer.height + slack;
-}
-
-static bool overlaps(ev_rect a, ev_rect b)
-{
-    double slack = 1.0;
-    return a.x + slack < b.x + b.width && b.x + slack < a.x + a.width &&
-           a.y + slack < b.y + b.height && b.y + slack < a.y + a.height;
-}
-
-static void check_places(const char *what, const ev_boxes *boxes, double width, double height)
-{
-    ev_rect page = {0.0, 0.0, width, height};
-    int texts = 0;
-    for (int i = 0; i < boxes->count; ++i) {
-        const ev_box *box = &boxes->items[i];
-        if (box->kind != EV_BOX_TEXT)
-            continue;
-        ++texts;
-        if (!lies_within(box->rect, box->within) || !lies_within(box->rect, page))
-            fail_msg("%s: %s \"%s\" (%g %g %g %g) is not inside (%g %g %g %g)", what, box->name,
-                     box->text, box->rect.x, box->rect.y, box->rect.width, box->rect.height,
-                     box->within.x, box->within.y, box->within.width, box->within.height);
-    }
-    assert_in_range(texts, 60, EV_BOX_CAPACITY);
-    assert_in_range(boxes->count, 80, EV_BOX_CAPACITY - 1); /* none was dropped */
-}
-
-static void check_apart(const char *what, const ev_boxes *boxes)
-{
-    for (int i = 0; i < boxes->count; ++i)
-        for (int k = 0; k < i; ++k) {
-            const ev_box *a = &boxes->items[i], *b = &boxes->items[k];
-            if (a->kind == EV_BOX_TEXT && b->kind == EV_BOX_TEXT && overlaps(a->rect, b->rect))
-                fail_msg("%s: %s \"%s\" lies on %s \"%s\"", what, a->name, a->text, b->name,
-                         b->text);
-        }
-}
-
-/* On a real scene only what a person wrote may lose its end; at the least size the rest fits. */
-static void check_whole(const char *what, const ev_boxes *boxes)
-{
-    static const char *const free_text[] = {"text.bar.title", "text.bar.notice", "text.verdict.1",
-                                            "text.verdict.2"};
-    for (int i = 0; i < boxes->count; ++i) {
-        const ev_box *box = &boxes->items[i];
-        bool may_end = box->kind != EV_BOX_TEXT;
-        for (size_t k = 0; k < sizeof free_text / sizeof free_text[0]; ++k)
-            may_end = may_end || strcmp(box->name, free_text[k]) == 0;
-        double drawn = fmax(box->rect.width, box->rect.height);
-        if (!may_end && drawn < ev_text_width(box->text, EV_FONT_SMALL) - 0.5)
-            fail_msg("%s: %s \"%s\" has lost its end", what, box->name, box->text);
-    }
-}
 
 static void text_lies_inside_its_place(void **state)
 {
@@ -348,48 +288,6 @@ static void row_pointed_at_turns_yellow(void **state)
     free(boxes);
 }
 
-static bool mentions(const ev_box *box, const char *word)
-{
-    return box && strstr(box->text, word) != NULL;
-}
-
-/* Cautions stand on what is handed out, by what applies, and nowhere else. */
-static void hand_outs_carry_cautions(void **state)
-{
-    const scene_list *list = *state;
-    ev_boxes *boxes = calloc(1, sizeof *boxes);
-    for (int i = 0; i < list->count; ++i)
-        for (int size = 0; size < SIZE_COUNT; ++size)
-            for (int site = 0; site < 2; ++site) {
-                ev_sheet sheet = list->items[i]->sheet;
-                ev_antenna antenna = *sheet.antenna;
-                antenna.site.present = site;
-                sheet.antenna = &antenna;
-                snprintf(sheet.date, sizeof sheet.date, "1 December 2026");
-                cairo_surface_t *surface = cairo_image_surface_create(
-                    CAIRO_FORMAT_RGB24, (int)sizes[size][0], (int)sizes[size][1]);
-                cairo_t *cairo = cairo_create(surface);
-                boxes->count = 0;
-                ev_draw_handout(cairo, sizes[size][0], sizes[size][1], &sheet, boxes);
-                cairo_destroy(cairo);
-                cairo_surface_destroy(surface);
-                check_places("a hand-out", boxes, sizes[size][0], sizes[size][1]);
-                check_apart("a hand-out", boxes);
-                check_whole("a hand-out", boxes);
-                const ev_box *caution = ev_boxes_find(boxes, "text.foot.caution");
-                assert_true(mentions(caution, "Facing the Sun"));
-                double wide = caution->rect.width, half = 0.45 * sizes[0][0];
-                assert_int_equal(wide > half, site); /* the second sentence */
-                assert_string_equal(ev_boxes_find(boxes, "text.foot.date")->text,
-                                    "1 December 2026");
-                assert_null(ev_boxes_find(boxes, "button.move"));
-                cairo_surface_destroy(
-                    draw_page(&list->items[i]->sheet, sizes[size][0], sizes[size][1], boxes));
-                assert_null(ev_boxes_find(boxes, "text.foot.caution"));
-            }
-    free(boxes);
-}
-
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -402,7 +300,6 @@ int main(void)
         cmocka_unit_test(no_region_is_blank_or_flooded),
         cmocka_unit_test(regions_tile_the_page),
         cmocka_unit_test(row_pointed_at_turns_yellow),
-        cmocka_unit_test(hand_outs_carry_cautions),
     };
     return cmocka_run_group_tests(tests, load_scenes, free_scenes);
 }

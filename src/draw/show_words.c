@@ -47,6 +47,13 @@ static void add_lines(const ev_sheet *sheet, ev_show_words *words)
     case EV_VERDICT_SUB_MISPLACED:
         add_faults(verdict, words);
         break;
+    case EV_VERDICT_TURNED:
+        add(words, 0, false, verdict->turn == EV_TURN_SUB_TILT ? "Subreflector" : "Feed");
+        add(words, 1, true,
+            verdict->turn == EV_TURN_ROLL ? "turned by %.0f degrees" : "aimed %.1f degrees off",
+            fabs(verdict->turn_by) * 180.0 / EV_PI);
+        add(words, 1, false, ".");
+        break;
     case EV_VERDICT_IN_PLACE:
     case EV_VERDICT_STRUTS:
         add(words, 0, false, "The feed is");
@@ -88,7 +95,7 @@ void ev_show_word_out(const ev_sheet *sheet, ev_show_words *words)
     add_lines(sheet, words);
     if (verdict->id == EV_VERDICT_DARK)
         add_percent(words, budget->power[EV_FATE_APERTURE], "of its power reaches the sky.");
-    else if (verdict->move_count > 0)
+    else if (verdict->move_count > 0 || verdict->id == EV_VERDICT_TURNED)
         add_percent(words,
                     fmin(pow(10.0, 0.1 * (budget->gain_on_axis_dbi - verdict->after_dbi)), 1.0),
                     "of the signal is left.");

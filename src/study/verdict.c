@@ -10,8 +10,8 @@ static const double loss_to_name_db = 0.05; /* a part is called misplaced from h
 
 const char *ev_verdict_word(ev_verdict_id id)
 {
-    static const char *const words[] = {"in_place", "feed_misplaced", "sub_misplaced", "as_meant",
-                                        "struts",   "too_small",      "dark"};
+    static const char *const words[] = {"in_place", "feed_misplaced", "sub_misplaced", "turned",
+                                        "as_meant", "struts",         "too_small",     "dark"};
     return words[id];
 }
 
@@ -208,6 +208,7 @@ void ev_verdict_find(const ev_design *design, double frequency, int feed, ev_ver
             settle_in_place(&at, &now, verdict);
         else
             price_moves(&at, verdict);
+        ev_verdict_weigh_turns(design, frequency, feed, verdict);
         if (verdict->wavelengths < 10.0)
             verdict->id = EV_VERDICT_TOO_SMALL;
     }

@@ -9,6 +9,7 @@ typedef enum {
     EV_VERDICT_IN_PLACE, /* moving wins nothing (under 0.05 dB) */
     EV_VERDICT_FEED_MISPLACED,
     EV_VERDICT_SUB_MISPLACED,
+    EV_VERDICT_TURNED,    /* a roll or tilt costs more than any move wins: turn it back */
     EV_VERDICT_AS_MEANT,  /* a feed with a beam of its own, in place for it */
     EV_VERDICT_STRUTS,    /* in place; the struts are the loss to mend */
     EV_VERDICT_TOO_SMALL, /* under 10 wavelengths: rays are only a guide */
@@ -23,6 +24,9 @@ typedef struct ev_move {
 } ev_move;
 
 enum { EV_MOVE_CAPACITY = 3 };
+
+/* What can be turned against the design. */
+typedef enum { EV_TURN_ROLL, EV_TURN_FEED_TILT, EV_TURN_SUB_TILT, EV_TURN_COUNT } ev_turn;
 
 /* The losses that moving a part does not mend, dB, for the words of a feed in place. */
 typedef struct ev_verdict_rest {
@@ -41,6 +45,8 @@ typedef struct ev_verdict {
     double below_first_db;                       /* as meant: below the first feed's gain */
     double wavelengths;                          /* across the dish */
     double strut_db, strut_half_db, strut_width; /* struts: cost now and at half the width, m */
+    ev_turn turn;                                /* turned: what, by how much (rad) */
+    double turn_by;
     ev_verdict_rest rest;
     char text[320];   /* first line: what is wrong and what it costs */
     char advice[320]; /* second line: what to do and what it wins */
@@ -54,6 +60,11 @@ void ev_verdict_find(const ev_design *design, double frequency, int feed, ev_ver
 
 /* Word for JSON: "in_place", "feed_misplaced", ... */
 const char *ev_verdict_word(ev_verdict_id id);
+
+/* Looks whether turning something back wins more than the verdict's moves (verdict_turn.c); if so
+ * the verdict becomes that. */
+void ev_verdict_weigh_turns(const ev_design *design, double frequency, int feed,
+                            ev_verdict *verdict);
 
 /* Puts the verdict's numbers into text, advice and bold (verdict_words.c). `design` names things.
  */

@@ -184,6 +184,20 @@ static void say_small(line *first, line *second, const ev_verdict *verdict)
         fault(move));
 }
 
+static void say_turn(line *first, line *second, const char *who, const ev_verdict *verdict)
+{
+    static const char *const faults[] = {"turned by %.1f degrees about its own axis",
+                                         "aimed %.1f degrees off", "tilted by %.1f degrees"};
+    static const char *const remedies[] = {"Turn it back until its polarization is upright",
+                                           "Aim it as the design says", "Straighten it"};
+    char fault[80];
+    snprintf(fault, sizeof fault, faults[verdict->turn], fabs(verdict->turn_by) * 180.0 / EV_PI);
+    add(first, "%s **%s**: **%.*f dB** lost.",
+        verdict->turn == EV_TURN_SUB_TILT ? "Subreflector" : who, fault,
+        verdict->loss_db < 0.095 ? 2 : 1, verdict->loss_db);
+    add(second, "%s. Then %.1f dBi.", remedies[verdict->turn], verdict->after_dbi);
+}
+
 static const char *feed_name(const ev_design *design, int feed, char text[EV_NAME_CAPACITY + 8])
 {
     if (design->feed_count == 1)
@@ -218,6 +232,9 @@ void ev_verdict_word_out(const ev_design *design, int feed, ev_verdict *verdict)
         say_faults(&first, "Subreflector", verdict);
         say_moves(&second, design, verdict);
         say_feed_only(&second, design, verdict);
+        break;
+    case EV_VERDICT_TURNED:
+        say_turn(&first, &second, who, verdict);
         break;
     case EV_VERDICT_AS_MEANT:
         add(&first, "%s points ", who);

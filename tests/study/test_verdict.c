@@ -35,8 +35,8 @@ static void follow(ev_design *design, const ev_verdict *verdict)
 static void test_words(void **state)
 {
     (void)state;
-    const char *const words[] = {"in_place", "feed_misplaced", "sub_misplaced", "as_meant",
-                                 "struts",   "too_small",      "dark"};
+    const char *const words[] = {"in_place", "feed_misplaced", "sub_misplaced", "turned",
+                                 "as_meant", "struts",         "too_small",     "dark"};
     for (int id = 0; id <= EV_VERDICT_DARK; id++)
         assert_string_equal(ev_verdict_word((ev_verdict_id)id), words[id]);
 }
@@ -261,6 +261,30 @@ static void test_what_remains(void **state)
     assert_non_null(strstr(verdict.advice, "surface"));
 }
 
+/* A roll costs cos^2 of its angle and a tilt its own loss; neither is blamed on a move. */
+static void test_turned(void **state)
+{
+    (void)state;
+    const double roll = 0.3;
+    ev_design design = ev_fixture_design((ev_fixture)0);
+    design.feeds[0].polarization = EV_POLARIZATION_X;
+    double straight = gain_of(&design);
+    design.feeds[0].roll = roll;
+    ev_verdict verdict = judge(&design);
+    assert_int_equal(verdict.id, EV_VERDICT_TURNED);
+    assert_int_equal(verdict.turn, EV_TURN_ROLL);
+    assert_int_equal(verdict.move_count, 0);
+    assert_near(verdict.after_dbi, straight, 1e-9);
+    assert_near(verdict.loss_db, -20.0 * log10(cos(roll)), 1e-3);
+    design.feeds[0].roll = 0.0;
+    design.feeds[0].tilt_y = 0.25;
+    verdict = judge(&design);
+    assert_int_equal(verdict.id, EV_VERDICT_TURNED);
+    assert_int_equal(verdict.turn, EV_TURN_FEED_TILT);
+    assert_near(verdict.turn_by, 0.25, 1e-12);
+    assert_non_null(strstr(verdict.text, "14.3 degrees off"));
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -274,6 +298,7 @@ int main(void)
         cmocka_unit_test(test_as_meant),
         cmocka_unit_test(test_too_small_and_dark),
         cmocka_unit_test(test_what_remains),
+        cmocka_unit_test(test_turned),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -13,7 +13,7 @@
  *   key NAME                    u, Tab, Return, ctrl+z    hold alt, hold none   for what follows
  *   text WORDS                  typed as they are         type ADDRESS WORDS    into a field
  *   shot FILE.png               what the window shows     boxes FILE    hot boxes as text
- *   print budget | verdict | notice | ADDRESS             to standard output
+ *   print budget | verdict | notice | driver | ADDRESS    to standard output; the driver is SDL's
  *   expect ADDRESS VALUE, expect notice WORDS, expect verdict WORD
  *   latency                     print and forget the times from input to picture in drags
  *   quit

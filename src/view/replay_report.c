@@ -74,6 +74,8 @@ bool ev_player_print(ev_player *player, const ev_step *step)
     ev_player_frame(player);
     if (strcmp(what, "notice") == 0) {
         printf("notice %s\n", view->notice);
+    } else if (strcmp(what, "driver") == 0) {
+        printf("driver %s\n", SDL_GetCurrentVideoDriver());
     } else if (!view->model.scene) {
         return ev_player_fail(player, 2, "No scene is open.");
     } else if (strcmp(what, "budget") == 0) {

@@ -245,7 +245,7 @@ static const ev_verb verbs[] = {
     {"type", "wr", "type ADDRESS VALUE", NULL, run_type},
     {"shot", "r", "shot FILE.png", NULL, run_shot},
     {"boxes", "r", "boxes FILE", NULL, ev_player_boxes},
-    {"print", "w", "print budget, verdict, notice or ADDRESS", NULL, ev_player_print},
+    {"print", "w", "print budget, verdict, notice, driver or ADDRESS", NULL, ev_player_print},
     {"expect", "wr", "expect ADDRESS VALUE, expect notice WORDS, expect verdict WORD", NULL,
      ev_player_expect},
     {"latency", "", "latency", NULL, ev_player_latency},

@@ -268,7 +268,7 @@ void ev_budget_compute_feed(const ev_antenna *antenna, int feed, ev_feed_budget 
     account sum = {.antenna = antenna, .feed = feed};
     *budget = (ev_feed_budget){.wanted = antenna->feeds[feed].wanted};
     make_nodes(&sum);
-    budget->peak = ev_aperture_peak(antenna, &sum.lit, budget->wanted);
+    budget->peak = ev_aperture_peak(antenna, feed, &sum.lit, budget->wanted);
     if (antenna->feeds[feed].toward_peak)
         budget->wanted = budget->peak;
     sum_paths(&sum, budget);
@@ -303,7 +303,7 @@ double ev_axis_gain_dbi(const ev_antenna *antenna, int feed)
                        &nodes);
     }
     if (antenna->feeds[feed].toward_peak)
-        wanted = ev_aperture_peak(antenna, &nodes, wanted);
+        wanted = ev_aperture_peak(antenna, feed, &nodes, wanted);
     double size = cabs(ev_aperture_integral(antenna, &nodes, wanted));
     double polarization =
         ev_polarization_efficiency(&nodes, antenna->feeds[feed].polarization, wanted);

@@ -184,17 +184,63 @@ static double whole_amplitude(const ev_nodes *nodes)
     return sum;
 }
 
-/* A lobe that holds most of what the aperture can give leaves too little for a higher one. */
-ev_vec3 ev_aperture_peak(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 wanted)
+/* Where the zone of the main reflector over (x, y) points: the ray's direction as it leaves. */
+static ev_vec3 pointing_of(const ev_antenna *antenna, int feed, double x, double y)
+{
+    ev_sample sample = ev_aperture_sample(antenna, feed, x, y);
+    return ev_conic_reflect(&antenna->main, sample.point, sample.incident);
+}
+
+enum { ZONE_RINGS = 4, ZONE_SECTORS = 8, ZONES = ZONE_RINGS * ZONE_SECTORS + 1, CLIMBS = 3 };
+enum { ZONE_NODES = 60000 };
+
+/* The directions of the zones that give most, best first. */
+static void rank_zones(const ev_antenna *antenna, int feed, const ev_nodes *nodes,
+                       ev_vec3 best[CLIMBS])
+{
+    double heights[CLIMBS] = {0};
+    for (int zone = 0; zone < ZONES && nodes->count < ZONE_NODES; zone++) {
+        double r =
+            antenna->radius * ((zone + ZONE_SECTORS - 1) / ZONE_SECTORS) / (ZONE_RINGS + 0.5);
+        double phi = 2.0 * EV_PI * (zone % ZONE_SECTORS) / ZONE_SECTORS;
+        ev_vec3 s = pointing_of(antenna, feed, antenna->offset + r * cos(phi), r * sin(phi));
+        if (!(s.z > 0.1))
+            continue;
+        double height = cabs(ev_aperture_integral(antenna, nodes, s));
+        for (int i = 0; i < CLIMBS; i++)
+            if (height > heights[i]) {
+                for (int k = CLIMBS - 1; k > i; k--) {
+                    heights[k] = heights[k - 1];
+                    best[k] = best[k - 1];
+                }
+                heights[i] = height;
+                best[i] = s;
+                break;
+            }
+    }
+}
+
+/* A lobe that holds most of what the aperture can give leaves too little for a higher one. Where
+ * none does, the lobe is broken up: the highest piece stands where many zones point. */
+ev_vec3 ev_aperture_peak(const ev_antenna *antenna, int feed, const ev_nodes *nodes, ev_vec3 wanted)
 {
     ev_plane plane = ev_fit_plane(antenna, nodes, wanted, EV_WEIGHT_AMPLITUDE);
-    double by_tilt, by_wish, most = whole_amplitude(nodes);
-    ev_vec3 tilted = direction_of(wanted.x + plane.b, wanted.y + plane.c);
-    tilted = climb(antenna, nodes, tilted, &by_tilt);
-    if (by_tilt * by_tilt > 0.6 * most * most)
-        return tilted;
-    ev_vec3 wished = climb(antenna, nodes, wanted, &by_wish);
-    return by_wish > by_tilt * (1.0 + 1e-9) ? wished : tilted;
+    double highest, most = whole_amplitude(nodes);
+    ev_vec3 peak =
+        climb(antenna, nodes, direction_of(wanted.x + plane.b, wanted.y + plane.c), &highest);
+    if (highest * highest >= 0.6 * most * most)
+        return peak;
+    ev_vec3 starts[CLIMBS + 1] = {wanted, wanted, wanted, wanted};
+    rank_zones(antenna, feed, nodes, starts + 1);
+    for (int i = 0; i <= CLIMBS; i++) {
+        double height;
+        ev_vec3 found = climb(antenna, nodes, starts[i], &height);
+        if (height > highest * (1.0 + 1e-9)) {
+            highest = height;
+            peak = found;
+        }
+    }
+    return peak;
 }
 
 double ev_polarization_efficiency(const ev_nodes *nodes, ev_polarization polarization, ev_vec3 s)

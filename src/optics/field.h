@@ -19,8 +19,10 @@ ev_plane ev_fit_plane(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 
 /* Sum of weight sqrt(density) exp(-j(k(path - s.P) + phase)). */
 double _Complex ev_aperture_integral(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 s);
 
-/* Direction that maximises its magnitude: Newton from the amplitude-weighted tilt of the path. */
-ev_vec3 ev_aperture_peak(const ev_antenna *antenna, const ev_nodes *nodes, ev_vec3 wanted);
+/* Direction that maximises its magnitude: Newton from the amplitude-weighted tilt of the path, and
+ * where that leaves much to find, from where the zones of the aperture point. */
+ev_vec3 ev_aperture_peak(const ev_antenna *antenna, int feed, const ev_nodes *nodes,
+                         ev_vec3 wanted);
 
 /* |int E_co|^2 / (int |E|)^2, without the phase of the path. */
 double ev_polarization_efficiency(const ev_nodes *nodes, ev_polarization polarization, ev_vec3 s);

@@ -174,6 +174,49 @@ static void test_table_does_not_overshoot(void **state)
     free(table);
 }
 
+/* A gentle fall beside a steep one: the steep one's slope does not leak into it. */
+static void test_table_beside_a_cliff(void **state)
+{
+    (void)state;
+    ev_pattern_table *table = calloc(1, sizeof *table);
+    const double levels[] = {0.0, -0.5, -0.6, -25.0, -25.1};
+    table->count = 5;
+    for (int i = 0; i < 5; i++) {
+        table->theta[i] = 10.0 * i * degree;
+        table->e_db[i] = table->h_db[i] = levels[i];
+    }
+    ev_pattern_table_prepare(table);
+    ev_pattern pattern = tabled(table);
+    for (int i = 0; i + 1 < 5; i++)
+        for (double part = 0.01; part < 1.0; part += 0.01) {
+            double level = in_db(&pattern, (10.0 * i + 10.0 * part) * degree, false);
+            assert_true(level <= levels[i] + 1e-9 && level >= levels[i + 1] - 1e-9);
+        }
+    free(table);
+}
+
+/* Entries at any spacing: a level that falls with the square of the angle is followed between them.
+ */
+static void test_uneven_spacing(void **state)
+{
+    (void)state;
+    ev_pattern_table *table = calloc(1, sizeof *table);
+    const double angles[] = {0.0, 4.0, 6.0, 14.0, 16.0, 26.0, 29.0, 40.0};
+    table->count = 8;
+    for (int i = 0; i < 8; i++) {
+        table->theta[i] = angles[i] * degree;
+        table->e_db[i] = -0.01 * angles[i] * angles[i];
+        table->h_db[i] = -0.02 * angles[i] * angles[i];
+    }
+    ev_pattern_table_prepare(table);
+    ev_pattern pattern = tabled(table);
+    for (double angle = 0.0; angle <= 29.0; angle += 0.5) {
+        assert_near(in_db(&pattern, angle * degree, false), -0.01 * angle * angle, 1e-9);
+        assert_near(in_db(&pattern, angle * degree, true), -0.02 * angle * angle, 1e-9);
+    }
+    free(table);
+}
+
 /* A table that starts off the axis holds its first level inward; one entry is a disc. */
 static void test_odd_tables(void **state)
 {
@@ -199,6 +242,8 @@ int main(void)
         cmocka_unit_test(test_ends),
         cmocka_unit_test(test_table_follows_its_entries),
         cmocka_unit_test(test_table_does_not_overshoot),
+        cmocka_unit_test(test_table_beside_a_cliff),
+        cmocka_unit_test(test_uneven_spacing),
         cmocka_unit_test(test_odd_tables),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -161,6 +161,43 @@ static void test_crossing_strips(void **state)
                  1e-9);
 }
 
+/* Where y cuts a circle, as an interval of x. */
+static bool cut_row(ev_outline circle, double y, double interval[2])
+{
+    double half = circle.ux * circle.ux - pow(y - circle.y, 2.0);
+    interval[0] = circle.x - sqrt(fmax(half, 0.0));
+    interval[1] = circle.x + sqrt(fmax(half, 0.0));
+    return half > 0.0;
+}
+
+/* A body that reaches over the rim and under the sub's shadow, in pieces with corners where three
+ * outlines meet: row by row. */
+static void test_corners(void **state)
+{
+    (void)state;
+    enum { ROWS = 400000 };
+    for (int k = 0; k < 8; k++) {
+        ev_shadows shadows = bare();
+        shadows.has_sub = true;
+        shadows.sub = disc(-0.72, 0.0, 0.1);
+        shadows.bodies[shadows.body_count++] = disc(-0.66 - 0.006 * k, 0.09 + 0.002 * k, 0.06);
+        ev_outline rim = disc(shadows.centre_x, 0.0, shadows.radius), body = shadows.bodies[0];
+        double areas[EV_FATE_COUNT], sum = 0.0, step = 2.0 * body.ux / ROWS;
+        for (int i = 0; i < ROWS; i++) {
+            double y = body.y - body.ux + (i + 0.5) * step, in_body[2], in_rim[2], in_sub[2];
+            cut_row(body, y, in_body);
+            cut_row(rim, y, in_rim);
+            double from = fmax(in_body[0], in_rim[0]), to = fmin(in_body[1], in_rim[1]);
+            double length = fmax(0.0, to - from);
+            if (cut_row(shadows.sub, y, in_sub))
+                length -= fmax(0.0, fmin(to, in_sub[1]) - fmax(from, in_sub[0]));
+            sum += step * length;
+        }
+        sweep_areas(&shadows, areas);
+        assert_near(areas[EV_FATE_SHADOW_FEED], sum, 2e-9);
+    }
+}
+
 static ev_shadows random_shadows(ev_random *random)
 {
     ev_shadows shadows = bare();
@@ -214,7 +251,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(test_precedence),      cmocka_unit_test(test_outline_areas),
         cmocka_unit_test(test_lenses),          cmocka_unit_test(test_strip_areas),
-        cmocka_unit_test(test_crossing_strips), cmocka_unit_test(test_random_shadows),
+        cmocka_unit_test(test_crossing_strips), cmocka_unit_test(test_corners),
+        cmocka_unit_test(test_random_shadows),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

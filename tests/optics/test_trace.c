@@ -108,6 +108,26 @@ static void test_fan_counts_the_shares(void **state)
     free(rays);
 }
 
+static int compare_doubles(const void *a, const void *b)
+{
+    double x = *(const double *)a, y = *(const double *)b;
+    return (x > y) - (x < y);
+}
+
+/* Between neighbouring rays on the main reflector, along x. */
+static double widest_gap(const ev_ray *rays, int count)
+{
+    double at[64], widest = 0.0;
+    size_t found = 0;
+    for (int i = 0; i < count; i++)
+        if (rays[i].fate != EV_FATE_PAST_SUB && rays[i].fate != EV_FATE_PAST_MAIN)
+            at[found++] = rays[i].points[rays[i].point_count - 2].x;
+    qsort(at, found, sizeof at[0], compare_doubles);
+    for (size_t i = 1; i < found; i++)
+        widest = fmax(widest, at[i] - at[i - 1]);
+    return widest;
+}
+
 /* As many rays of each fate as its share, all through the symmetry plane, none twice. */
 static void test_section(void **state)
 {
@@ -130,9 +150,27 @@ static void test_section(void **state)
             for (int k = 0; k < i; k++)
                 assert_true(ev_vec3_angle(rays[i].direction, rays[k].direction) > 0.0);
         }
+        assert_true(widest_gap(rays, count) < 0.12 * 2.0 * antenna.radius);
         for (int fate = 0; fate < EV_FATE_COUNT; fate++)
             assert_in_range(abs(found[fate] - (int)lround(budget.power[fate] * COUNT)), 0, 1);
     }
+}
+
+/* Feed to focal plane over two mirrors in place: 2F + 2a, to the last digits. */
+static void test_paths_to_rounding(void **state)
+{
+    (void)state;
+    enum { COUNT = 20000 };
+    ev_antenna antenna;
+    ev_ray *rays = malloc(COUNT * sizeof *rays);
+    build(EV_FIXTURE_CASSEGRAIN, false, &antenna);
+    double truth = 2.0 * antenna.focal_length +
+                   antenna.layout.sub_interfocal / antenna.layout.sub_eccentricity;
+    ev_trace_fan(&antenna, 0, COUNT, rays);
+    for (int i = 0; i < COUNT; i++)
+        if (rays[i].point_count == 4)
+            assert_ratio(rays[i].path + antenna.focal_length - rays[i].points[2].z, truth, 1.2e-15);
+    free(rays);
 }
 
 /* A direction that is no direction is past everything, without a trap. */
@@ -160,6 +198,7 @@ int main(void)
         cmocka_unit_test(test_where_rays_end),
         cmocka_unit_test(test_fan_counts_the_shares),
         cmocka_unit_test(test_section),
+        cmocka_unit_test(test_paths_to_rounding),
         cmocka_unit_test(test_nasty_directions),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -39,6 +39,7 @@ bool ev_view_may_leave(ev_view *view, const char *how, const char *question)
     bool asked = view->asked && strcmp(view->asked, how) == 0;
     if (ev_model_unsaved(&view->model) && !asked) {
         view->asked = how;
+        ev_showing_leave(view); /* to where the question can be read */
         ev_view_notice(view, question);
         return false;
     }
@@ -143,6 +144,7 @@ static void run_open(ev_view *view)
     } else if (ev_view_may_leave(view, "open",
                                  "Not saved. Press o again to give up the changes, s to save")) {
         ev_strip_leave(view, false);
+        ev_showing_leave(view);
         ev_model_close_scene(&view->model);
         view->pointed[0] = '\0';
     }
@@ -195,10 +197,12 @@ static const ev_act commands[] = {
     {"undo", "Undo", 0, "u: undo", can_undo, run_undo},
     {"redo", "Redo", 0, "r: do again", can_redo, run_redo},
     {"keep", "Keep", 0, "k: keep this state to compare with", is_open, run_keep},
+    {"show", "Show", 3, "w: show it large, to people", is_open, ev_showing_enter},
     {"picture", "Picture", 0, "p: picture beside the scene", is_open, run_picture},
     {"help", "Help", 0, "h: the next line of this help", is_open, run_help},
     {"move", NULL, -1, "Enter: move it where it belongs", is_open, run_move},
     {"part", NULL, -1, "Tab: next feed or subreflector", is_open, run_part},
+    {"back", NULL, -1, "", is_open, ev_showing_leave},
     {"section", NULL, -1, "1: section", is_open, run_section},
     {"space", NULL, -1, "2: space", is_open, run_space},
     {"stage", NULL, -1, "v: section or space", is_open, run_stage},
@@ -230,7 +234,8 @@ static const struct {
     {SDLK_2, false, false, "space"},   {SDLK_v, false, false, "stage"},
     {SDLK_f, false, false, "fit"},     {SDLK_e, false, false, "detail"},
     {SDLK_b, false, false, "plate"},   {SDLK_d, false, false, "light"},
-    {SDLK_q, false, false, "quit"},    {SDLK_q, true, false, "quit"},
+    {SDLK_w, false, false, "show"},    {SDLK_q, false, false, "quit"},
+    {SDLK_q, true, false, "quit"},
 };
 
 static const char *const more_help[] = {

@@ -73,6 +73,10 @@ static bool is_far_off(double held, double suits)
 static void fill_scales(ev_view *view, ev_sheet *sheet)
 {
     ev_sheet_scales(&view->page, sheet);
+    if (view->showing) {
+        sheet->front_exaggeration =
+            ev_show_exaggeration(view->page.width, view->page.height, sheet);
+    }
     double *const scales[] = {&sheet->front_exaggeration, &sheet->aperture_range,
                               &sheet->ledger_range, &sheet->beam_range, &sheet->cut_range};
     for (size_t i = 0; i < sizeof scales / sizeof scales[0]; ++i) {
@@ -228,6 +232,7 @@ void ev_view_draw(ev_view *view)
                              .items = view->gallery.items,
                              .item_count = view->gallery.count,
                              .dark = view->dark,
+                             .showing = view->showing,
                              .pointed = view->pointed,
                              .scale = view->window.scale,
                              .crew = view->crew,

@@ -113,7 +113,7 @@ void ev_drag_begin(ev_view *view, const ev_input *input)
         grab_handle(view, view->drag.name);
     } else if (field && ev_strip_find(view, field->name) >= 0) {
         press_field(view, ev_strip_find(view, field->name), input);
-    } else if (!gallery && is_inside(view->page.stage, input->x, input->y)) {
+    } else if (!gallery && !view->showing && is_inside(view->page.stage, input->x, input->y)) {
         press_stage(view, input);
     }
 }

@@ -106,7 +106,7 @@ static void on_wheel(ev_view *view, const ev_input *input)
     const ev_box *box = find_pointed(view, input->x, input->y);
     int field = box ? ev_strip_find(view, box->name) : -1;
     double factor = SDL_pow(1.2, input->wheel);
-    if (!view->model.scene || view->drag.kind != EV_DRAG_NONE) {
+    if (!view->model.scene || view->showing || view->drag.kind != EV_DRAG_NONE) {
         return;
     }
     if (field >= 0) {
@@ -168,7 +168,7 @@ static void on_key(ev_view *view, const ev_input *input)
         }
         return;
     }
-    if (open && ev_strip_key(view, input)) {
+    if (open && (ev_strip_key(view, input) || ev_showing_key(view, input))) {
         return;
     }
     const ev_act *command = ev_act_of_key(input->key, input->modifiers);

@@ -43,7 +43,7 @@ static ev_rect place_lower_plate(const ev_page *page)
     return page->plate_count > 1 ? page->plates[1] : (ev_rect){0.0, 0.0, 0.0, 0.0};
 }
 
-static ev_rect place_gallery(const ev_page *page)
+static ev_rect place_page(const ev_page *page)
 {
     return (ev_rect){0.0, 0.0, page->width, page->height};
 }
@@ -123,6 +123,13 @@ static void draw_stage(ev_layers *layers, ev_layer *layer, const ev_layers_input
     }
 }
 
+static void draw_show(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
+                      cairo_t *cairo)
+{
+    ev_draw_show(cairo, input->page->width, input->page->height, input->sheet, &layer->boxes,
+                 &layers->section, &layers->detail);
+}
+
 static void draw_gallery(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
                          cairo_t *cairo)
 {
@@ -141,5 +148,7 @@ const ev_layer_plan ev_layer_plans[EV_LAYER_COUNT] = {
     [EV_LAYER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_plate, draw_plate},
     [EV_LAYER_LOWER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_lower_plate,
                               draw_lower_plate},
-    [EV_LAYER_GALLERY] = {ON(PAGE) | ON(GALLERY) | ON(POINTED), place_gallery, draw_gallery},
+    [EV_LAYER_SHOW] = {ON(PAGE) | ON(NUMBERS) | ON(VERDICT) | ON(STAGE) | ON(POINTED), place_page,
+                       draw_show},
+    [EV_LAYER_GALLERY] = {ON(PAGE) | ON(GALLERY) | ON(POINTED), place_page, draw_gallery},
 };

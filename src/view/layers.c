@@ -10,7 +10,10 @@
 static bool is_shown(const ev_layers_input *input, int id)
 {
     bool empty = ev_layer_plans[id].place(input->page).width == 0.0;
-    return !empty && (id == EV_LAYER_GALLERY) == (input->sheet == NULL);
+    if (empty || !input->sheet) {
+        return id == EV_LAYER_GALLERY && !empty;
+    }
+    return id != EV_LAYER_GALLERY && (id == EV_LAYER_SHOW) == input->showing;
 }
 
 bool ev_layers_start(ev_layers *layers, ev_diagnostics *diagnostics)
@@ -102,7 +105,7 @@ static void draw_layer(void *data, int index)
     cairo_translate(cairo, -rect.x, -rect.y);
     layer->boxes.count = 0;
     ev_layer_plans[id].draw(layers, layer, input, cairo);
-    if (input->sheet) {
+    if (input->sheet && !input->showing) {
         ev_draw_rules(cairo, input->page, input->dark);
     }
     cairo_destroy(cairo);

@@ -15,6 +15,7 @@ typedef enum {
     EV_LAYER_LEDGER,
     EV_LAYER_PLATE, /* the only plate, or the upper of two */
     EV_LAYER_LOWER_PLATE,
+    EV_LAYER_SHOW,    /* showing mode: the whole page, alone */
     EV_LAYER_GALLERY, /* the whole page, alone */
     EV_LAYER_COUNT
 } ev_layer_id;
@@ -55,7 +56,7 @@ typedef struct ev_layers_input {
     const ev_sheet *sheet; /* NULL: the gallery */
     const ev_gallery_item *items;
     int item_count;
-    bool dark;
+    bool dark, showing;
     const char *pointed;
     double scale; /* device pixels per page pixel */
     ev_crew *crew;

@@ -81,7 +81,9 @@ typedef struct ev_view {
     ev_page page;
     ev_sheet sheet; /* what the last frame showed */
     ev_stage_mode stage;
-    bool dark, detail; /* detail: the enlarged part is shown */
+    bool dark, detail;          /* detail: the enlarged part is shown */
+    bool showing;               /* the page of showing mode; then the Stage is a section, */
+    ev_stage_mode stage_before; /* and goes back to this */
     ev_plate plate;
     double zoom, pan_x, pan_y;
     ev_camera camera;
@@ -159,6 +161,11 @@ const ev_act *ev_act_of_key(SDL_Keycode key, Uint16 modifiers);
 bool ev_act_possible(const ev_view *view, const ev_act *command);
 void ev_act_run(ev_view *view, const ev_act *command);
 int ev_action_list(const ev_view *view, ev_action actions[EV_ACTION_CAPACITY]);
+
+/* showing.c; true of a key: it has been seen to, or means nothing there */
+void ev_showing_enter(ev_view *view);
+void ev_showing_leave(ev_view *view);
+bool ev_showing_key(ev_view *view, const ev_input *input);
 
 /* gallery.c */
 void ev_gallery_load(ev_gallery *gallery, const char *folder);

@@ -30,6 +30,7 @@ static void show_scene(ev_view *view)
     view->grabbed = view->editing = -1;
     view->row_count = 0;
     view->drag = (ev_drag){0};
+    ev_showing_leave(view);
     view->asked = NULL;
     view->pointed[0] = view->notice[0] = '\0';
     view->dirty = true;
@@ -52,6 +53,7 @@ bool ev_view_open_scene(ev_view *view, const char *path)
         const ev_diagnostic *first = &diagnostics->items[0];
         snprintf(text, sizeof text, "Not opened: %s%s%d: %s", first->file ? first->file : path, ":",
                  first->line, first->text);
+        ev_showing_leave(view);
         ev_view_notice(view, text);
     }
     ev_diagnostics_clear(diagnostics);

@@ -19,8 +19,17 @@ static bool can_be_seen(const char *driver)
     return driver && strcmp(driver, "offscreen") != 0 && strcmp(driver, "dummy") != 0;
 }
 
+/* Only the drivers that can work here: asking for others makes their libraries complain. */
+static void choose_drivers(void)
+{
+    if (!SDL_getenv("WAYLAND_DISPLAY")) {
+        SDL_SetHint(SDL_HINT_VIDEODRIVER, SDL_getenv("DISPLAY") ? "x11,offscreen" : "offscreen");
+    }
+}
+
 static bool start_video(bool unseen, ev_diagnostics *diagnostics)
 {
+    choose_drivers();
     SDL_SetHint(SDL_HINT_VIDEO_X11_NET_WM_BYPASS_COMPOSITOR, "0");
     SDL_SetHint(SDL_HINT_MOUSE_FOCUS_CLICKTHROUGH, "1");
     bool started = SDL_Init(SDL_INIT_VIDEO) == 0;

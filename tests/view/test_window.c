@@ -214,7 +214,9 @@ static void check_pictures(const char *path)
                                 "size 1100 700\nsettle\nshot small_space.png\n"
                                 "boxes small_space.boxes\n"
                                 "key 1\nkey d\nsettle\nboxes small_section.boxes\n"
-                                "shot small_section.png\n");
+                                "shot small_section.png\n"
+                                "click tab.beam\nsettle\nboxes small_beam.boxes\n"
+                                "click tab.cut\nsettle\nboxes small_cut.boxes\n");
     if (run.code != 0) {
         print_error("%s: %s\n", path, run.text);
     }
@@ -227,6 +229,8 @@ static void check_pictures(const char *path)
     check_boxes(path, "space.boxes");
     check_boxes(path, "small_section.boxes");
     check_boxes(path, "small_space.boxes");
+    check_boxes(path, "small_beam.boxes");
+    check_boxes(path, "small_cut.boxes");
     free(run.text);
 }
 

@@ -66,7 +66,7 @@ enum { CLIMB_LIMIT = 60 };
 ev_vec3 ev_beam_climb(ev_beam_source *source, ev_vec3 from, bool cross, double *gain)
 {
     double lobe = lobe_width(source), h = 2e-3 * lobe, u = from.x, v = from.y;
-    double power[STENCIL], next[STENCIL], step[2];
+    double power[STENCIL], next[STENCIL] = {0}, step[2];
     stencil(source, u, v, h, cross, power);
     for (int pass = 0; pass < CLIMB_LIMIT && power[4] > 0.0; pass++) {
         climb_step(power, h, lobe, step);

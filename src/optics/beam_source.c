@@ -238,7 +238,7 @@ static void sum_batch(const ev_beam_source *source, bool shadows, const ev_vec3 
 static void sum_all(ev_beam_source *source, bool shadows, const ev_vec3 *directions, int count,
                     ev_beam_field *fields)
 {
-    need *needs = malloc((size_t)(count > 0 ? count : 1) * sizeof *needs);
+    need *needs = calloc((size_t)(count > 0 ? count : 1), sizeof *needs);
     if (!needs)
         abort();
     for (int i = 0; i < count; i++)

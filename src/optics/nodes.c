@@ -155,7 +155,7 @@ static void prepare(const ev_cut *cut, int obstacle, int samples, sweep *over)
 /* Nodes being gathered, bare ones first, all evaluated at the end. */
 static void append(const sweep *over, const ev_region_nodes *bare, double scale, ev_nodes *nodes)
 {
-    size_t count = (size_t)(nodes->count + bare->count);
+    size_t count = (size_t)nodes->count + (size_t)bare->count;
     nodes->items = realloc(nodes->items, (count ? count : 1) * sizeof *nodes->items);
     if (!nodes->items)
         abort();

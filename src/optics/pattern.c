@@ -3,6 +3,7 @@
 
 #include "optics/quadrature.h"
 
+#include <assert.h>
 #include <stddef.h>
 
 enum { SPHERE_PIECES = 16, SPHERE_NODES = 16 };
@@ -88,6 +89,7 @@ ev_pattern_level ev_pattern_at(const ev_pattern *pattern, double theta)
         level = pattern->norm * exp(-pattern->rate * theta * theta);
         break;
     case EV_PATTERN_TABLE: {
+        assert(pattern->table);
         ev_pattern_level found = table_level(pattern->table, theta);
         found.e *= pattern->norm;
         found.h *= pattern->norm;

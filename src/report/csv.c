@@ -122,7 +122,7 @@ void ev_json_print_csv(FILE *stream, json_t *const *lines, int count)
 
 void ev_report_csv(FILE *stream, const ev_report *reports, int count)
 {
-    json_t **lines = calloc((size_t)count * EV_FEED_CAPACITY, sizeof *lines);
+    json_t **lines = calloc((size_t)count * EV_FEED_CAPACITY, sizeof(json_t *));
     int line_count = 0;
     if (!lines)
         abort();

@@ -239,14 +239,15 @@ static void draw_part_words(ev_pen *pen, const char *text, ev_rect plot, double 
         y < plot.y + 15.0 || (falls_right ? x + room > plot.x + plot.width : x - room < plot.x);
     bool at_right = under != falls_right;
     double left = at_right ? x + 9.0 : x - room;
-    ev_text(pen, (ev_words){.name = "text.cut.part",
-                            .string = text,
-                            .font = EV_FONT_NOTE_STRONG,
-                            .colour = pen->theme->ink,
-                            .x = fmin(fmax(left, plot.x), plot.x + plot.width - width),
-                            .width = width,
-                            .baseline = under ? y + 21.0 : y - 3.0,
-                            .halo = true});
+    ev_text(pen,
+            (ev_words){.name = "text.cut.part",
+                       .string = text,
+                       .font = EV_FONT_NOTE_STRONG,
+                       .colour = pen->theme->ink,
+                       .x = fmin(fmax(left, plot.x), plot.x + plot.width - width),
+                       .width = width,
+                       .baseline = fmin(under ? y + 21.0 : y - 3.0, plot.y + plot.height - 5.0),
+                       .halo = true});
 }
 
 static void draw_part(ev_pen *pen, const ev_sheet *sheet, const ev_gain_curve *curve, ev_rect plot,
@@ -256,12 +257,12 @@ static void draw_part(ev_pen *pen, const ev_sheet *sheet, const ev_gain_curve *c
     if (!isfinite(loss))
         return;
     ev_plot_to_page(map, place, -loss, &x, &y);
-    y = fmin(y, plot.y + plot.height);
+    y = fmin(fmax(y, plot.y), plot.y + plot.height);
     ev_pen_line(pen, x, plot.y, x, plot.y + plot.height, pen->theme->second, EV_LINE_DIMENSION,
                 0.7);
     char text[80], at[32], cost[32];
     ev_format_number(at, sizeof at, 1e3 * place, 1, false);
-    ev_format_number(cost, sizeof cost, -loss, 2, false);
+    ev_format_number(cost, sizeof cost, fabs(loss) < 100.0 ? -loss : -INFINITY, 2, false);
     snprintf(text, sizeof text, "%s mm: %s dB", at, cost);
     double step = 1e-3 * (curve->place[EV_GAIN_CURVE_SAMPLES - 1] - curve->place[0]);
     draw_part_words(pen, text, plot, x, y, !(loss_at(curve, place + step) < loss));

@@ -70,6 +70,9 @@ static void every_row_is_reached_and_true(void **state)
                                         strlen(digits) < 47 ? strlen(digits) : 40);
                 assert_int_equal(has(boxes, "reset", address),
                                  ev_row_is_off_default(design, rows[k]));
+                /* What a file must give, and what follows, has nothing to go back to. */
+                if (rows[k].parameter->required || ev_parameter_is_derived(design, rows[k]))
+                    assert_false(has(boxes, "reset", address));
             }
         }
     free(boxes);

@@ -97,6 +97,46 @@ static void nan_is_drawn_as_a_dash(void **state)
     free(aperture);
 }
 
+static void fill_curve(ev_beam_curve *beam, ev_gain_curve *gain, double value)
+{
+    for (int i = 0; i < EV_BEAM_CURVE_SAMPLES; ++i)
+        beam->co_dbi[i] = beam->cross_dbi[i] = value;
+    for (int i = 0; i < EV_GAIN_CURVE_SAMPLES; ++i)
+        gain->loss_db[i] = value;
+    beam->peak_dbi = beam->peak_angle = value;
+}
+
+/* Curves of nonsense: axes all the same, and no coordinate that Cairo cannot hold. */
+static void nonsense_curves_are_drawn(void **state)
+{
+    drawn_scene *drawn = *state;
+    static const double values[] = {NAN, INFINITY, -INFINITY, 1e300, -1e300, 0.0};
+    static const double spans[] = {0.0, NAN, 1e-9, 1.5};
+    ev_beam_curve *beam = malloc(sizeof *beam);
+    ev_gain_curve *gain = malloc(sizeof *gain);
+    for (size_t i = 0; i < sizeof values / sizeof values[0]; ++i)
+        for (size_t k = 0; k < sizeof spans / sizeof spans[0]; ++k) {
+            ev_sheet sheet = drawn->sheet;
+            *beam = drawn->beams[0];
+            *gain = drawn->gain;
+            fill_curve(beam, gain, values[i]);
+            beam->span = spans[k];
+            sheet.beams[0] = sheet.kept_beam = beam;
+            sheet.gain_curve = gain;
+            sheet.plate = k % 2 ? EV_PLATE_CUT : EV_PLATE_BEAM;
+            check_drawn(&sheet, true);
+            gain->place[0] = gain->place[EV_GAIN_CURVE_SAMPLES - 1] = values[i];
+            sheet.plate = EV_PLATE_CUT;
+            check_drawn(&sheet, true);
+            ev_page page = ev_page_layout(1280.0, 800.0);
+            ev_sheet_scales(&page, &sheet);
+            assert_true(isfinite(sheet.beam_range) && sheet.beam_range > 0.0);
+            assert_true(isfinite(sheet.cut_range) && sheet.cut_range > 0.0);
+        }
+    free(beam);
+    free(gain);
+}
+
 static void too_much_of_everything_fits(void **state)
 {
     drawn_scene *drawn = *state;
@@ -233,6 +273,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(empty_sheet_is_drawn),
         cmocka_unit_test(nan_is_drawn_as_a_dash),
+        cmocka_unit_test(nonsense_curves_are_drawn),
         cmocka_unit_test(too_much_of_everything_fits),
         cmocka_unit_test(far_away_and_close_up_are_drawn),
         cmocka_unit_test(editing_shows_what_is_typed_and_the_complaint),

@@ -104,6 +104,9 @@ static void axes_say_what_the_map_has(void **state)
             ev_sheet_scales(&page, &sheet);
             ev_plot_map map = ev_beam_plot(&page, &sheet);
             cairo_surface_destroy(draw_page(&sheet, sizes[size][0], sizes[size][1], boxes));
+            ev_rect plot = ev_boxes_find(boxes, "plate.beam")->rect;
+            assert_true(fabs(map.y0 - map.y_scale * sheet.beam_range - plot.y - plot.height) <
+                        1e-6);
             int levels = 0, angles = 0;
             for (int k = 0; k < boxes->count; ++k) {
                 const ev_box *box = &boxes->items[k];
@@ -158,9 +161,13 @@ static void limit_stands_about_the_beam(void **state)
         sheet.limit = &known[i];
         cairo_surface_destroy(draw_page(&sheet, 1280.0, 800.0, boxes));
         assert_string_equal(ev_boxes_find(boxes, "text.beam.limit")->text, words[i]);
-        /* Deep enough to see what the limit asks. */
-        double deepest = ev_limit_start(&known[i]);
-        assert_true(ev_limit_at(&known[i], deepest) - 40.0 > -ev_beam_range(&page, &sheet) + 10.0);
+        /* Deep enough to see what the limit asks, of the largest dishes as well. */
+        for (double gain = 40.0; gain < 91.0; gain += 10.0) {
+            curve.peak_dbi = gain;
+            double asked = ev_limit_at(&known[i], ev_limit_start(&known[i])) - gain;
+            assert_true(asked > -ev_beam_range(&page, &sheet) + 10.0);
+        }
+        curve.peak_dbi = 40.0;
     }
     sheet.limit = NULL;
     cairo_surface_destroy(draw_page(&sheet, 1280.0, 800.0, boxes));

@@ -103,6 +103,16 @@ static void words_fit_and_targets_suit_fingers(void **state)
     free(s);
 }
 
+/* Whether ink stands within two pixels of a place. */
+static bool is_inked(cairo_surface_t *surface, double x, double y)
+{
+    for (int dy = -2; dy <= 2; ++dy)
+        for (int dx = -2; dx <= 2; ++dx)
+            if ((pixel_at(surface, (int)x + dx, (int)y + dy) & 0xFF) < 0x50)
+                return true;
+    return false;
+}
+
 static void antenna_stands_at_its_elevation(void **state)
 {
     const scene_list *list = *state;
@@ -130,6 +140,8 @@ static void antenna_stands_at_its_elevation(void **state)
                     double x, y;
                     ev_plot_to_page(map, p.z, p.x, &x, &y);
                     assert_true(x > 0.0 && x < sizes[size][0] && y > 0.0 && y < floor);
+                    bool hole = fabs(0.25 * k * antenna.radius) < 1.05 * antenna.hole_radius;
+                    assert_true(hole || is_inked(s->surface, x, y));
                 }
                 assert_true(2.0 * antenna.radius * scale > 0.28 * sizes[size][1]);
                 if (site > 0) { /* what is drawn is the ground's line, over the whole width */

@@ -125,7 +125,8 @@ typedef struct ev_sheet {
     const ev_gain_curve *gain_curve;              /* Cut plate; NULL: not computed */
     ev_plate plate; /* chosen by a tab: the only one, or the one below the Aperture */
     bool dark;
-    bool paper; /* nothing to press: no button, tabs or marks of the pointer */
+    bool settings; /* the Strip offers "All settings", key A: button "button.settings" */
+    bool paper;    /* nothing to press: no button, tabs or marks of the pointer */
     bool unsaved, can_undo, can_redo, detail, grabbed, stale;
     char pointed[80]; /* name of the hot box under the pointer, or "" */
     char notice[160]; /* one line of news: "Undid: feed out", or "" */

@@ -7,16 +7,21 @@
 #include <stdio.h>
 #include <string.h>
 
-static const double margin = 24.0, tick_pitch = 6.0, tape_width = 96.0;
+static const double margin = 24.0, tick_pitch = 6.0, tape_width = 96.0, settings_room = 96.0;
 
-static double field_pitch(const ev_page *page)
+/* "All settings" takes the end of the Strip, and on a narrow one the place of the last field. */
+static int shown_fields(const ev_page *page, const ev_sheet *sheet)
 {
-    return (page->strip.width - 2.0 * margin) / EV_FIELD_CAPACITY;
+    bool is_narrow = sheet->settings && page->strip.width < 800.0;
+    int most = is_narrow ? EV_FIELD_CAPACITY - 1 : EV_FIELD_CAPACITY;
+    return sheet->field_count < most ? sheet->field_count : most;
 }
 
-static ev_rect field_place(const ev_page *page, int field)
+static ev_rect field_place(const ev_page *page, const ev_sheet *sheet, int field)
 {
-    double pitch = field_pitch(page);
+    bool is_narrow = sheet->settings && page->strip.width < 800.0;
+    double room = page->strip.width - 2.0 * margin - (sheet->settings ? settings_room : 0.0);
+    double pitch = room / (is_narrow ? EV_FIELD_CAPACITY - 1 : EV_FIELD_CAPACITY);
     return (ev_rect){page->strip.x + margin + pitch * field, page->strip.y, pitch - 12.0,
                      page->strip.height};
 }
@@ -79,7 +84,7 @@ static ev_typing make_typing(const ev_field *field, const char *name, ev_rect pl
 
 int ev_field_byte_at(const ev_page *page, const ev_sheet *sheet, int field, double x)
 {
-    ev_typing typing = make_typing(&sheet->fields[field], "", field_place(page, field), 0.0);
+    ev_typing typing = make_typing(&sheet->fields[field], "", field_place(page, sheet, field), 0.0);
     return ev_typing_index(&typing, x);
 }
 
@@ -133,7 +138,7 @@ static void draw_complaint(ev_pen *pen, const ev_field *field, ev_rect place, do
 static void draw_field(ev_pen *pen, const ev_page *page, const ev_sheet *sheet, int index)
 {
     const ev_field *field = &sheet->fields[index];
-    ev_rect place = field_place(page, index);
+    ev_rect place = field_place(page, sheet, index);
     double baseline = value_baseline(page);
     char box[80], name[100];
     snprintf(box, sizeof box, "field.%.70s", field->address);
@@ -158,15 +163,41 @@ static void draw_field(ev_pen *pen, const ev_page *page, const ev_sheet *sheet, 
         draw_tape(pen, field, place.x, baseline + 10.0);
 }
 
+static void draw_settings(ev_pen *pen, const ev_page *page, const ev_sheet *sheet)
+{
+    const char *label = "All settings";
+    double width = ev_text_width(label, EV_FONT_BODY) + 1.0;
+    double x = page->strip.x + page->strip.width - margin - width;
+    double baseline = value_baseline(page);
+    ev_rect box = {x - 10.0, baseline - 22.0, width + 20.0, 32.0};
+    bool pointed = ev_pointed(sheet, "button.settings");
+    ev_colour colour = pointed ? pen->theme->ink : pen->theme->second;
+    ev_boxes_add(pen->boxes, EV_BOX_BUTTON, "button.settings", box);
+    if (pointed)
+        ev_pen_fill(pen, (ev_rect){x - 7.0, baseline - 16.5, width + 14.0, 24.0}, 3.0,
+                    pen->theme->fill, 1.0);
+    ev_text(pen, (ev_words){.name = "text.button.settings",
+                            .string = label,
+                            .font = EV_FONT_BODY,
+                            .colour = colour,
+                            .x = x,
+                            .width = width,
+                            .baseline = baseline});
+    ev_pen_line(pen, x, baseline + 2.5, x + ev_text_caret(label, EV_FONT_BODY, 1), baseline + 2.5,
+                colour, 1.0, 0.8);
+}
+
 void ev_draw_strip(cairo_t *cairo, const ev_page *page, const ev_sheet *sheet, ev_boxes *boxes)
 {
     ev_pen pen = ev_pen_begin(cairo, sheet->dark, boxes, "strip", page->strip);
     ev_pen_ground(&pen);
-    for (int i = 0; i < sheet->field_count; ++i)
+    for (int i = 0; i < shown_fields(page, sheet); ++i)
         draw_field(&pen, page, sheet, i);
-    for (int i = 0; i < sheet->field_count; ++i)
+    if (sheet->settings && !sheet->paper)
+        draw_settings(&pen, page, sheet);
+    for (int i = 0; i < shown_fields(page, sheet); ++i)
         if (sheet->fields[i].complaint[0])
-            draw_complaint(&pen, &sheet->fields[i], field_place(page, i),
+            draw_complaint(&pen, &sheet->fields[i], field_place(page, sheet, i),
                            value_baseline(page) + 21.0);
     ev_pen_end(&pen);
 }

@@ -19,6 +19,7 @@ static void text_lies_inside_its_place(void **state)
                 sheet.dark = variant % 2 == 1;
                 sheet.detail = variant < 2;
                 sheet.plate = (ev_plate)(variant / 2);
+                sheet.settings = variant / 2 == 1;
                 char what[128];
                 snprintf(what, sizeof what, "%s at %g%s%s", list->items[i]->name, sizes[size][0],
                          sheet.dark ? " dark" : "", sheet.detail ? "" : " without detail");
@@ -81,11 +82,12 @@ static void button_stands_only_where_there_is_a_move(void **state)
     assert_true(with > 0 && without > 0);
     for (int i = 0; i < list->count; ++i) { /* and never on paper */
         ev_sheet sheet = list->items[i]->sheet;
-        sheet.paper = true;
+        sheet.paper = sheet.settings = true;
         cairo_surface_destroy(draw_page(&sheet, 1280.0, 800.0, boxes));
         assert_null(ev_boxes_find(boxes, "button.move"));
         assert_null(ev_boxes_find(boxes, "tab.space"));
         assert_null(ev_boxes_find(boxes, "tab.cut"));
+        assert_null(ev_boxes_find(boxes, "button.settings"));
     }
     free(boxes);
 }
@@ -118,6 +120,29 @@ static void boxes_are_where_the_window_looks(void **state)
                                          row->rect.y + 0.5 * row->rect.height, EV_BOX_ROW);
         assert_ptr_equal(hit, row);
     }
+    free(boxes);
+}
+
+static void settings_are_offered_beside_the_fields(void **state)
+{
+    const scene_list *list = *state;
+    ev_boxes *boxes = calloc(1, sizeof *boxes);
+    for (int size = 0; size < SIZE_COUNT; ++size)
+        for (int offered = 0; offered < 2; ++offered) {
+            ev_sheet sheet = list->items[0]->sheet;
+            sheet.settings = offered;
+            cairo_surface_destroy(draw_page(&sheet, sizes[size][0], sizes[size][1], boxes));
+            const ev_box *button = ev_boxes_find(boxes, "button.settings");
+            assert_int_equal(button != NULL, offered);
+            int fields = 0;
+            for (int i = 0; i < boxes->count; ++i) {
+                const ev_box *box = &boxes->items[i];
+                fields += box->kind == EV_BOX_FIELD;
+                if (box->kind == EV_BOX_FIELD && button)
+                    assert_false(overlaps(box->rect, button->rect));
+            }
+            assert_int_equal(fields, offered && sizes[size][0] < 1200.0 ? 5 : 6);
+        }
     free(boxes);
 }
 
@@ -295,6 +320,7 @@ int main(void)
         cmocka_unit_test(verdict_ends_before_its_button),
         cmocka_unit_test(button_stands_only_where_there_is_a_move),
         cmocka_unit_test(boxes_are_where_the_window_looks),
+        cmocka_unit_test(settings_are_offered_beside_the_fields),
         cmocka_unit_test(ledger_draws_the_budget),
         cmocka_unit_test(watts_draw_the_budget),
         cmocka_unit_test(no_region_is_blank_or_flooded),

@@ -145,6 +145,7 @@ static void run_open(ev_view *view)
                                  "Not saved. Press o again to give up the changes, s to save")) {
         ev_strip_leave(view, false);
         ev_showing_leave(view);
+        ev_drawer_close(view);
         ev_model_close_scene(&view->model);
         view->pointed[0] = '\0';
     }
@@ -197,6 +198,7 @@ static const ev_act commands[] = {
     {"undo", "Undo", 0, "u: undo", can_undo, run_undo},
     {"redo", "Redo", 0, "r: do again", can_redo, run_redo},
     {"keep", "Keep", 0, "k: keep this state to compare with", is_open, run_keep},
+    {"settings", "Settings", 2, "t: all settings", is_open, ev_drawer_open},
     {"show", "Show", 3, "w: show it large, to people", is_open, ev_showing_enter},
     {"picture", "Picture", 0, "p: picture beside the scene", is_open, run_picture},
     {"help", "Help", 0, "h: the next line of this help", is_open, run_help},
@@ -234,8 +236,8 @@ static const struct {
     {SDLK_2, false, false, "space"},   {SDLK_v, false, false, "stage"},
     {SDLK_f, false, false, "fit"},     {SDLK_e, false, false, "detail"},
     {SDLK_b, false, false, "plate"},   {SDLK_d, false, false, "light"},
-    {SDLK_w, false, false, "show"},    {SDLK_q, false, false, "quit"},
-    {SDLK_q, true, false, "quit"},
+    {SDLK_w, false, false, "show"},    {SDLK_t, false, false, "settings"},
+    {SDLK_q, false, false, "quit"},    {SDLK_q, true, false, "quit"},
 };
 
 static const char *const more_help[] = {
@@ -344,8 +346,8 @@ void ev_view_click(ev_view *view, const char *name)
         }
         return;
     }
-    if (strncmp(name, "part.", 5) == 0) {
-        return; /* pressing has chosen it */
+    if (strncmp(name, "part.", 5) == 0 || ev_drawer_click(view, name)) {
+        return; /* pressing has chosen a part */
     }
     const ev_act *command = dot ? ev_act_find(dot + 1) : NULL;
     if (command) {

@@ -4,8 +4,9 @@
 
 #include <SDL.h>
 #include <stdbool.h>
+#include <stddef.h>
 
-enum { EV_EDIT_CAPACITY = 48 };
+enum { EV_EDIT_CAPACITY = 256 };
 
 typedef struct ev_edit {
     char text[EV_EDIT_CAPACITY]; /* UTF-8 */
@@ -25,3 +26,5 @@ bool ev_edit_key(ev_edit *edit, SDL_Keycode key, Uint16 modifiers);
 /* The caret to a byte; `extend` keeps the anchor. */
 void ev_edit_place(ev_edit *edit, int byte, bool extend);
 void ev_edit_select_all(ev_edit *edit);
+/* What a drawing needs of it, cut to `size` bytes. */
+void ev_edit_show(const ev_edit *edit, char *text, size_t size, int *caret, int *anchor);

@@ -2,6 +2,8 @@
  * begin is made anew for each key. */
 #include "view/controls.h"
 
+#include "base/text.h"
+
 #include <pango/pangocairo.h>
 #include <string.h>
 
@@ -156,6 +158,14 @@ static bool handle_clipboard(ev_edit *edit, SDL_Keycode key)
     default:
         return false;
     }
+}
+
+void ev_edit_show(const ev_edit *edit, char *text, size_t size, int *caret, int *anchor)
+{
+    ev_text_copy(text, size, edit->text);
+    int length = (int)strlen(text);
+    *caret = SDL_min(edit->caret, length);
+    *anchor = SDL_min(edit->anchor, length);
 }
 
 static void erase_step(ev_edit *edit, int direction, bool word)

@@ -144,9 +144,19 @@ double ev_field_value(const ev_model *model, const ev_field_row *row)
                         : ev_parameter_get(&model->design, row->ref);
 }
 
+/* Added since the scene was opened: its tape is marked where it stands. */
+static bool is_new(const ev_model *model, ev_parameter_ref ref)
+{
+    ev_owner owner = ref.parameter->owner;
+    return (owner == EV_OWNER_FEED && ref.index >= model->opened.feed_count) ||
+           (owner == EV_OWNER_STRUT && ref.index >= model->opened.strut_count);
+}
+
 double ev_field_nominal(const ev_model *model, const ev_field_row *row)
 {
-    return row->is_move ? 0.0 : ev_parameter_get(&model->opened, row->ref);
+    const ev_design *from =
+        !row->is_move && is_new(model, row->ref) ? &model->design : &model->opened;
+    return row->is_move ? 0.0 : ev_parameter_get(from, row->ref);
 }
 
 void ev_field_show(const ev_model *model, const ev_field_row *row, ev_field *field)

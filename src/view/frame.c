@@ -16,9 +16,8 @@ static void fill_fields(ev_view *view, ev_sheet *sheet)
         field->grabbed = i == view->grabbed || (ev_view_moving(view) && i == view->drag.field);
         field->editing = i == view->editing;
         if (field->editing) {
-            memcpy(field->edit_text, view->edit.text, sizeof field->edit_text);
-            field->edit_caret = view->edit.caret;
-            field->edit_anchor = view->edit.anchor;
+            ev_edit_show(&view->edit, field->edit_text, sizeof field->edit_text, &field->edit_caret,
+                         &field->edit_anchor);
             memcpy(field->complaint, view->complaint, sizeof field->complaint);
         }
     }
@@ -176,6 +175,14 @@ static void stamp_rest(const ev_view *view, ev_layers_input *input)
     }
 }
 
+/* The drawer's text is stamped as it is shown: the whole of it is small. */
+static void stamp_drawer(ev_layers_input *input)
+{
+    if (input->drawer) {
+        STAMP(DRAWER, *input->drawer);
+    }
+}
+
 static void measure_page(ev_view *view)
 {
     double width = fmax(view->window.width, EV_WINDOW_LEAST_WIDTH);
@@ -193,6 +200,7 @@ static void compute(ev_view *view)
     view->model.wants_gain = view->plate == EV_PLATE_CUT;
     ev_model_compute(&view->model, view->stage, ev_view_moving(view));
     view->row_count = ev_fields_list(&view->model, view->rows);
+    view->grabbed = view->grabbed < view->row_count ? view->grabbed : -1;
     if (view->stage == EV_STAGE_SPACE && !view->camera_kept && !ev_view_moving(view)) {
         ev_space_fit(&view->model.study->antenna, &view->page, view->detail, &view->camera);
     }
@@ -233,6 +241,7 @@ void ev_view_draw(ev_view *view)
                              .item_count = view->gallery.count,
                              .dark = view->dark,
                              .showing = view->showing,
+                             .drawer = ev_drawer_shown(view),
                              .pointed = view->pointed,
                              .scale = view->window.scale,
                              .crew = view->crew,
@@ -241,6 +250,7 @@ void ev_view_draw(ev_view *view)
     if (input.sheet) {
         stamp_numbers(view, &input);
         stamp_rest(view, &input);
+        stamp_drawer(&input);
     }
     clear(view);
     if (input.sheet && view->stage == EV_STAGE_SPACE) {

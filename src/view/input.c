@@ -73,7 +73,9 @@ static void on_press(ev_view *view, const ev_input *input)
         return;
     }
     view->fresh = false;
-    ev_drag_begin(view, input);
+    if (!ev_drawer_press(view, input)) {
+        ev_drag_begin(view, input);
+    }
 }
 
 static void on_release(ev_view *view, const ev_input *input)
@@ -106,7 +108,8 @@ static void on_wheel(ev_view *view, const ev_input *input)
     const ev_box *box = find_pointed(view, input->x, input->y);
     int field = box ? ev_strip_find(view, box->name) : -1;
     double factor = SDL_pow(1.2, input->wheel);
-    if (!view->model.scene || view->showing || view->drag.kind != EV_DRAG_NONE) {
+    if (!view->model.scene || view->showing || view->drag.kind != EV_DRAG_NONE ||
+        ev_drawer_wheel(view, input)) {
         return;
     }
     if (field >= 0) {
@@ -168,7 +171,8 @@ static void on_key(ev_view *view, const ev_input *input)
         }
         return;
     }
-    if (open && (ev_strip_key(view, input) || ev_showing_key(view, input))) {
+    if (open &&
+        (ev_strip_key(view, input) || ev_drawer_key(view, input) || ev_showing_key(view, input))) {
         return;
     }
     const ev_act *command = ev_act_of_key(input->key, input->modifiers);
@@ -190,6 +194,9 @@ static void on_key(ev_view *view, const ev_input *input)
 
 static void on_text(ev_view *view, const ev_input *input)
 {
+    if (ev_drawer_text(view, input->text)) {
+        return;
+    }
     if (view->editing >= 0) {
         ev_edit_insert(&view->edit, input->text);
         view->complaint[0] = '\0';
@@ -218,6 +225,17 @@ static void on_quit(ev_view *view, const ev_input *input)
     ev_act_run(view, ev_act_find("quit"));
 }
 
+/* Letters come as text while there is something to type into. */
+static void listen(const ev_view *view)
+{
+    bool wanted = view->editing >= 0 || ev_drawer_listens(view);
+    if (wanted && !SDL_IsTextInputActive()) {
+        SDL_StartTextInput();
+    } else if (!wanted && SDL_IsTextInputActive()) {
+        SDL_StopTextInput();
+    }
+}
+
 void ev_view_input(ev_view *view, const ev_input *input)
 {
     static void (*const handlers[])(ev_view *, const ev_input *) = {
@@ -231,6 +249,7 @@ void ev_view_input(ev_view *view, const ev_input *input)
         view->y = input->y;
     }
     handlers[input->kind](view, input);
+    listen(view);
     if (view->model.message[0]) {
         ev_view_notice(view, view->model.message);
         view->model.message[0] = '\0';

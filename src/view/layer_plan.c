@@ -43,6 +43,12 @@ static ev_rect place_lower_plate(const ev_page *page)
     return page->plate_count > 1 ? page->plates[1] : (ev_rect){0.0, 0.0, 0.0, 0.0};
 }
 
+static ev_rect place_column(const ev_page *page)
+{
+    return (ev_rect){page->ledger.x, page->ledger.y, page->ledger.width,
+                     page->height - page->ledger.y};
+}
+
 static ev_rect place_page(const ev_page *page)
 {
     return (ev_rect){0.0, 0.0, page->width, page->height};
@@ -123,6 +129,13 @@ static void draw_stage(ev_layers *layers, ev_layer *layer, const ev_layers_input
     }
 }
 
+static void draw_drawer(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
+                        cairo_t *cairo)
+{
+    (void)layers;
+    ev_draw_drawer(cairo, input->page, input->sheet, input->drawer, &layer->boxes);
+}
+
 static void draw_show(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
                       cairo_t *cairo)
 {
@@ -148,6 +161,7 @@ const ev_layer_plan ev_layer_plans[EV_LAYER_COUNT] = {
     [EV_LAYER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_plate, draw_plate},
     [EV_LAYER_LOWER_PLATE] = {ON(PAGE) | ON(NUMBERS) | ON(PLATES) | ON(POINTED), place_lower_plate,
                               draw_lower_plate},
+    [EV_LAYER_DRAWER] = {ON(PAGE) | ON(NUMBERS) | ON(DRAWER), place_column, draw_drawer},
     [EV_LAYER_SHOW] = {ON(PAGE) | ON(NUMBERS) | ON(VERDICT) | ON(STAGE) | ON(POINTED), place_page,
                        draw_show},
     [EV_LAYER_GALLERY] = {ON(PAGE) | ON(GALLERY) | ON(POINTED), place_page, draw_gallery},

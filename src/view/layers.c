@@ -13,7 +13,12 @@ static bool is_shown(const ev_layers_input *input, int id)
     if (empty || !input->sheet) {
         return id == EV_LAYER_GALLERY && !empty;
     }
-    return id != EV_LAYER_GALLERY && (id == EV_LAYER_SHOW) == input->showing;
+    if (input->showing) {
+        return id == EV_LAYER_SHOW;
+    }
+    bool covered = id == EV_LAYER_LEDGER || id == EV_LAYER_PLATE || id == EV_LAYER_LOWER_PLATE;
+    return id == EV_LAYER_DRAWER ? input->drawer != NULL
+                                 : id < EV_LAYER_DRAWER && !(covered && input->drawer);
 }
 
 bool ev_layers_start(ev_layers *layers, ev_diagnostics *diagnostics)
@@ -105,7 +110,7 @@ static void draw_layer(void *data, int index)
     cairo_translate(cairo, -rect.x, -rect.y);
     layer->boxes.count = 0;
     ev_layer_plans[id].draw(layers, layer, input, cairo);
-    if (input->sheet && !input->showing) {
+    if (id < EV_LAYER_DRAWER) {
         ev_draw_rules(cairo, input->page, input->dark);
     }
     cairo_destroy(cairo);

@@ -2,7 +2,7 @@
  * when something it shows has changed; hot boxes stay with the image they belong to. */
 #pragma once
 
-#include "draw/draw.h"
+#include "draw/drawer.h"
 #include "view/gl.h"
 #include "view/raster.h"
 
@@ -15,6 +15,7 @@ typedef enum {
     EV_LAYER_LEDGER,
     EV_LAYER_PLATE, /* the only plate, or the upper of two */
     EV_LAYER_LOWER_PLATE,
+    EV_LAYER_DRAWER,  /* in place of ledger and plates */
     EV_LAYER_SHOW,    /* showing mode: the whole page, alone */
     EV_LAYER_GALLERY, /* the whole page, alone */
     EV_LAYER_COUNT
@@ -30,6 +31,7 @@ typedef enum {
     EV_STAMP_POINTED,
     EV_STAMP_FIELDS,
     EV_STAMP_STAGE, /* mode, zoom, pan, part in hand, loss map, camera */
+    EV_STAMP_DRAWER,
     EV_STAMP_GALLERY,
     EV_STAMP_COUNT
 } ev_stamp_kind;
@@ -57,6 +59,7 @@ typedef struct ev_layers_input {
     const ev_gallery_item *items;
     int item_count;
     bool dark, showing;
+    const ev_drawer *drawer; /* NULL: closed */
     const char *pointed;
     double scale; /* device pixels per page pixel */
     ev_crew *crew;

@@ -92,6 +92,20 @@ bool ev_model_unsaved(const ev_model *model)
     return model->scene && ev_history_id(model->history) != model->saved_id;
 }
 
+/* Feeds and the subreflector come and go: what was in hand may be gone, and what is known about
+ * other feeds is of no use. */
+static void keep_to_what_is_there(ev_model *model, int feeds_before)
+{
+    if (model->design.feed_count != feeds_before) {
+        model->has_beams = model->has_kept = model->has_kept_beam = false;
+    }
+    if (model->feed >= model->design.feed_count) {
+        ev_model_select(model, EV_PART_FEED, 0);
+    } else if (model->part == EV_PART_SUB && !model->design.sub.present) {
+        ev_model_select(model, EV_PART_FEED, model->feed);
+    }
+}
+
 static bool is_buildable(const ev_design *design)
 {
     ev_problem problems[8];
@@ -131,8 +145,10 @@ bool ev_model_try(ev_model *model, const ev_design *design, bool own_move)
         explain(model, design);
         return false;
     }
+    int feeds = model->design.feed_count;
     model->message[0] = '\0';
     model->design = *design;
+    keep_to_what_is_there(model, feeds);
     ++model->serial;
     model->map_needs = own_move ? model->map_needs : model->serial;
     return true;
@@ -150,7 +166,9 @@ static void step_history(ev_model *model, const ev_design *design, const char *v
         snprintf(model->message, sizeof model->message, "Nothing to %s", verb);
         return;
     }
+    int feeds = model->design.feed_count;
     model->design = *design;
+    keep_to_what_is_there(model, feeds);
     model->map_needs = ++model->serial;
     snprintf(model->message, sizeof model->message, "%s: %s",
              strcmp(verb, "undo") == 0 ? "Undid" : "Did again", words);

@@ -79,7 +79,7 @@ void ev_model_ask(ev_model *model, bool moving)
 /* Coarse beams of a drag count as old once it is over. */
 static bool take_beams(ev_model *model, const ev_job *job)
 {
-    if (!job->good || !model->scene) {
+    if (!job->good || !model->scene || job->design.feed_count != model->design.feed_count) {
         free(job->beams);
         return false;
     }

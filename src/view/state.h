@@ -3,6 +3,7 @@
  * table of actions, strip.c the fields, gallery.c the scenes to choose from. */
 #pragma once
 
+#include "draw/drawer.h"
 #include "view/controls.h"
 #include "view/fields.h"
 #include "view/layers.h"
@@ -68,6 +69,14 @@ typedef struct ev_gallery {
     int count;
 } ev_gallery;
 
+/* The drawer of all settings: what is typed, and what of it is shown. */
+typedef struct ev_drawer_hand {
+    bool is_open;
+    ev_edit search, edit;
+    char offered[EV_EDIT_CAPACITY]; /* the text that typing began with */
+    ev_drawer shown;                /* its scroll, editing and complaint are the drawer's own */
+} ev_drawer_hand;
+
 typedef struct ev_view {
     const ev_view_options *options;
     ev_diagnostics *diagnostics;
@@ -99,6 +108,7 @@ typedef struct ev_view {
     int grabbed; /* field in hand, -1: none; then the part is */
     int editing; /* field being typed into, -1: none */
     ev_edit edit;
+    ev_drawer_hand drawer;
     bool fresh; /* a click has just opened it: a second one means nominal */
     char complaint[96];
     ev_drag drag;
@@ -144,6 +154,9 @@ void ev_strip_nominal(ev_view *view, int field);
 void ev_strip_nudge(ev_view *view, int field, double steps);
 int ev_strip_find(const ev_view *view, const char *box_name); /* "field.ADDRESS"; -1 */
 
+/* The value as one types it: a true minus is for reading, a keyboard has the short one. */
+void ev_strip_typed(const char *digits, const char *unit, char *text, size_t size);
+
 /* acts.c */
 typedef struct ev_act {
     const char *name;  /* "undo" */
@@ -166,6 +179,21 @@ int ev_action_list(const ev_view *view, ev_action actions[EV_ACTION_CAPACITY]);
 void ev_showing_enter(ev_view *view);
 void ev_showing_leave(ev_view *view);
 bool ev_showing_key(ev_view *view, const ev_input *input);
+
+/* drawer.c; true of an input: the drawer has taken it */
+void ev_drawer_open(ev_view *view); /* or closes it, when it is open */
+void ev_drawer_close(ev_view *view);
+const ev_drawer *ev_drawer_shown(ev_view *view); /* NULL: not there */
+bool ev_drawer_listens(const ev_view *view);     /* for text */
+bool ev_drawer_press(ev_view *view, const ev_input *input);
+bool ev_drawer_wheel(ev_view *view, const ev_input *input);
+bool ev_drawer_key(ev_view *view, const ev_input *input);
+bool ev_drawer_text(ev_view *view, const char *text);
+bool ev_drawer_click(ev_view *view, const char *name);
+
+/* drawer_lists.c: what a button "add.feed" or "copy.strut.0" does to a design, and the words for
+ * undo. False when it cannot. */
+bool ev_lists_change(ev_design *design, const char *button, char words[EV_WORDS_CAPACITY]);
 
 /* gallery.c */
 void ev_gallery_load(ev_gallery *gallery, const char *folder);

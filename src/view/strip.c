@@ -18,13 +18,17 @@ int ev_strip_find(const ev_view *view, const char *box_name)
     return -1;
 }
 
-/* The value as one types it: a true minus is for reading, a keyboard has the short one. */
+void ev_strip_typed(const char *digits, const char *unit, char *text, size_t size)
+{
+    bool minus = strncmp(digits, "\u2212", 3) == 0;
+    const char *word = strcmp(unit, "°") == 0 ? "deg" : unit;
+    snprintf(text, size, "%s%s%s%s", minus ? "-" : "", digits + (minus ? 3 : 0), *word ? " " : "",
+             word);
+}
+
 static void write_typed(const ev_field *shown, char *text, size_t size)
 {
-    bool minus = strncmp(shown->digits, "\u2212", 3) == 0;
-    const char *unit = strcmp(shown->unit, "°") == 0 ? "deg" : shown->unit;
-    snprintf(text, size, "%s%.23s%s%.11s", minus ? "-" : "", shown->digits + (minus ? 3 : 0),
-             *unit ? " " : "", unit);
+    ev_strip_typed(shown->digits, shown->unit, text, size);
 }
 
 void ev_strip_edit(ev_view *view, int field)

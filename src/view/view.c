@@ -31,6 +31,7 @@ static void show_scene(ev_view *view)
     view->row_count = 0;
     view->drag = (ev_drag){0};
     ev_showing_leave(view);
+    ev_drawer_close(view);
     view->asked = NULL;
     view->pointed[0] = view->notice[0] = '\0';
     view->dirty = true;

@@ -93,7 +93,7 @@ static void test_insert_in_the_middle(void **state)
 static void test_odd_text(void **state)
 {
     ev_edit edit = edit_of("", 0, 0);
-    char longer[200];
+    char longer[2 * EV_EDIT_CAPACITY];
     (void)state;
     ev_edit_insert(&edit, "1\n2\t3\x7F");
     assert_string_equal(edit.text, "123");

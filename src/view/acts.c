@@ -39,6 +39,7 @@ bool ev_view_may_leave(ev_view *view, const char *how, const char *question)
     bool asked = view->asked && strcmp(view->asked, how) == 0;
     if (ev_model_unsaved(&view->model) && !asked) {
         view->asked = how;
+        ev_finder_close(view);
         ev_showing_leave(view); /* to where the question can be read */
         ev_view_notice(view, question);
         return false;
@@ -201,7 +202,7 @@ static const ev_act commands[] = {
     {"settings", "Settings", 2, "t: all settings", is_open, ev_drawer_open},
     {"show", "Show", 3, "w: show it large, to people", is_open, ev_showing_enter},
     {"picture", "Picture", 0, "p: picture beside the scene", is_open, run_picture},
-    {"help", "Help", 0, "h: the next line of this help", is_open, run_help},
+    {"help", "Help", 0, "h: the next line of the help", is_open, run_help},
     {"move", NULL, -1, "Enter: move it where it belongs", is_open, run_move},
     {"part", NULL, -1, "Tab: next feed or subreflector", is_open, run_part},
     {"back", NULL, -1, "", is_open, ev_showing_leave},
@@ -215,6 +216,7 @@ static const ev_act commands[] = {
     {"cut", NULL, -1, "", is_open, run_cut},
     {"plate", NULL, -1, "b: beam, cut", is_open, run_plate},
     {"light", NULL, -1, "d: light or dark", always, run_light},
+    {"find", NULL, -1, "/: find what can be done", always, ev_finder_open},
     {"quit", NULL, -1, "q: leave", always, run_quit},
 };
 
@@ -225,22 +227,24 @@ static const struct {
     bool control, shift;
     const char *command;
 } keys[] = {
-    {SDLK_o, false, false, "open"},    {SDLK_o, true, false, "open"},
-    {SDLK_s, false, false, "save"},    {SDLK_s, true, false, "save"},
-    {SDLK_u, false, false, "undo"},    {SDLK_z, true, false, "undo"},
-    {SDLK_r, false, false, "redo"},    {SDLK_y, true, false, "redo"},
-    {SDLK_z, true, true, "redo"},      {SDLK_k, false, false, "keep"},
-    {SDLK_p, false, false, "picture"}, {SDLK_h, false, false, "help"},
-    {SDLK_F1, false, false, "help"},   {SDLK_RETURN, false, false, "move"},
-    {SDLK_TAB, false, false, "part"},  {SDLK_1, false, false, "section"},
-    {SDLK_2, false, false, "space"},   {SDLK_v, false, false, "stage"},
-    {SDLK_f, false, false, "fit"},     {SDLK_e, false, false, "detail"},
-    {SDLK_b, false, false, "plate"},   {SDLK_d, false, false, "light"},
-    {SDLK_w, false, false, "show"},    {SDLK_t, false, false, "settings"},
-    {SDLK_q, false, false, "quit"},    {SDLK_q, true, false, "quit"},
+    {SDLK_o, false, false, "open"},     {SDLK_o, true, false, "open"},
+    {SDLK_s, false, false, "save"},     {SDLK_s, true, false, "save"},
+    {SDLK_u, false, false, "undo"},     {SDLK_z, true, false, "undo"},
+    {SDLK_r, false, false, "redo"},     {SDLK_y, true, false, "redo"},
+    {SDLK_z, true, true, "redo"},       {SDLK_k, false, false, "keep"},
+    {SDLK_p, false, false, "picture"},  {SDLK_h, false, false, "help"},
+    {SDLK_F1, false, false, "help"},    {SDLK_RETURN, false, false, "move"},
+    {SDLK_TAB, false, false, "part"},   {SDLK_1, false, false, "section"},
+    {SDLK_2, false, false, "space"},    {SDLK_v, false, false, "stage"},
+    {SDLK_f, false, false, "fit"},      {SDLK_e, false, false, "detail"},
+    {SDLK_b, false, false, "plate"},    {SDLK_d, false, false, "light"},
+    {SDLK_w, false, false, "show"},     {SDLK_t, false, false, "settings"},
+    {SDLK_SLASH, false, false, "find"}, {SDLK_q, false, false, "quit"},
+    {SDLK_q, true, false, "quit"},
 };
 
 static const char *const more_help[] = {
+    "Press / to find anything that can be done, by its words, with its key",
     "Drag the yellow ring, the part itself or a tape; arrows nudge, Shift by ten, Alt by a tenth",
     "Click a value to type it (3/8 in); double-click puts it back to nominal",
     "Wheel zooms, drag moves the section or turns space; Shift or the right button moves space",
@@ -285,6 +289,11 @@ static void run_help(ev_view *view)
     ++view->help;
     ev_view_notice(view, text);
     view->notice_until = view->now + 20.0;
+}
+
+const ev_act *ev_act_at(int index)
+{
+    return index >= 0 && index < COMMAND_COUNT ? &commands[index] : NULL;
 }
 
 const ev_act *ev_act_find(const char *name)
@@ -339,6 +348,9 @@ int ev_action_list(const ev_view *view, ev_action actions[EV_ACTION_CAPACITY])
 void ev_view_click(ev_view *view, const char *name)
 {
     const char *dot = strchr(name, '.');
+    if (ev_finder_click(view, name)) {
+        return;
+    }
     if (strncmp(name, "scene.", 6) == 0) {
         int index = atoi(name + 6);
         if (index >= 0 && index < view->gallery.count) {

@@ -175,9 +175,12 @@ static void stamp_rest(const ev_view *view, ev_layers_input *input)
     }
 }
 
-/* The drawer's text is stamped as it is shown: the whole of it is small. */
-static void stamp_drawer(ev_layers_input *input)
+/* Drawer and list of actions are stamped as they are shown: the whole of each is small. */
+static void stamp_overlays(ev_layers_input *input)
 {
+    if (input->actions) {
+        STAMP(FINDER, *input->actions);
+    }
     if (input->drawer) {
         STAMP(DRAWER, *input->drawer);
     }
@@ -242,6 +245,7 @@ void ev_view_draw(ev_view *view)
                              .dark = view->dark,
                              .showing = view->showing,
                              .drawer = ev_drawer_shown(view),
+                             .actions = ev_finder_shown(view),
                              .pointed = view->pointed,
                              .scale = view->window.scale,
                              .crew = view->crew,
@@ -250,8 +254,8 @@ void ev_view_draw(ev_view *view)
     if (input.sheet) {
         stamp_numbers(view, &input);
         stamp_rest(view, &input);
-        stamp_drawer(&input);
     }
+    stamp_overlays(&input);
     clear(view);
     if (input.sheet && view->stage == EV_STAGE_SPACE) {
         ev_space_input space = {.page = &view->page,

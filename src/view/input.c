@@ -73,7 +73,7 @@ static void on_press(ev_view *view, const ev_input *input)
         return;
     }
     view->fresh = false;
-    if (!ev_drawer_press(view, input)) {
+    if (!ev_finder_press(view, input) && !ev_drawer_press(view, input)) {
         ev_drag_begin(view, input);
     }
 }
@@ -108,8 +108,8 @@ static void on_wheel(ev_view *view, const ev_input *input)
     const ev_box *box = find_pointed(view, input->x, input->y);
     int field = box ? ev_strip_find(view, box->name) : -1;
     double factor = SDL_pow(1.2, input->wheel);
-    if (!view->model.scene || view->showing || view->drag.kind != EV_DRAG_NONE ||
-        ev_drawer_wheel(view, input)) {
+    if (!view->model.scene || view->showing || view->finder.is_open ||
+        view->drag.kind != EV_DRAG_NONE || ev_drawer_wheel(view, input)) {
         return;
     }
     if (field >= 0) {
@@ -171,6 +171,9 @@ static void on_key(ev_view *view, const ev_input *input)
         }
         return;
     }
+    if (ev_finder_key(view, input)) {
+        return;
+    }
     if (open &&
         (ev_strip_key(view, input) || ev_drawer_key(view, input) || ev_showing_key(view, input))) {
         return;
@@ -194,7 +197,7 @@ static void on_key(ev_view *view, const ev_input *input)
 
 static void on_text(ev_view *view, const ev_input *input)
 {
-    if (ev_drawer_text(view, input->text)) {
+    if (ev_finder_text(view, input->text) || ev_drawer_text(view, input->text)) {
         return;
     }
     if (view->editing >= 0) {
@@ -228,7 +231,7 @@ static void on_quit(ev_view *view, const ev_input *input)
 /* Letters come as text while there is something to type into. */
 static void listen(const ev_view *view)
 {
-    bool wanted = view->editing >= 0 || ev_drawer_listens(view);
+    bool wanted = view->editing >= 0 || view->finder.is_open || ev_drawer_listens(view);
     if (wanted && !SDL_IsTextInputActive()) {
         SDL_StartTextInput();
     } else if (!wanted && SDL_IsTextInputActive()) {

@@ -143,6 +143,13 @@ static void draw_show(ev_layers *layers, ev_layer *layer, const ev_layers_input 
                  &layers->section, &layers->detail);
 }
 
+static void draw_finder(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
+                        cairo_t *cairo)
+{
+    (void)layers;
+    ev_draw_actions(cairo, input->page, input->dark, input->actions, &layer->boxes);
+}
+
 static void draw_gallery(ev_layers *layers, ev_layer *layer, const ev_layers_input *input,
                          cairo_t *cairo)
 {
@@ -164,5 +171,6 @@ const ev_layer_plan ev_layer_plans[EV_LAYER_COUNT] = {
     [EV_LAYER_DRAWER] = {ON(PAGE) | ON(NUMBERS) | ON(DRAWER), place_column, draw_drawer},
     [EV_LAYER_SHOW] = {ON(PAGE) | ON(NUMBERS) | ON(VERDICT) | ON(STAGE) | ON(POINTED), place_page,
                        draw_show},
+    [EV_LAYER_FINDER] = {ON(PAGE) | ON(FINDER), place_page, draw_finder},
     [EV_LAYER_GALLERY] = {ON(PAGE) | ON(GALLERY) | ON(POINTED), place_page, draw_gallery},
 };

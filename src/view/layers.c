@@ -10,6 +10,9 @@
 static bool is_shown(const ev_layers_input *input, int id)
 {
     bool empty = ev_layer_plans[id].place(input->page).width == 0.0;
+    if (id == EV_LAYER_FINDER) {
+        return input->actions != NULL;
+    }
     if (empty || !input->sheet) {
         return id == EV_LAYER_GALLERY && !empty;
     }
@@ -254,7 +257,11 @@ void ev_layers_show(ev_layers *layers, const ev_layers_input *input)
         if (!is_shown(input, id) || !layer->texture.id) {
             continue;
         }
-        if (id == EV_LAYER_STAGE && input->sheet->stage == EV_STAGE_SPACE) {
+        if (id == EV_LAYER_FINDER) {
+            glEnable(GL_BLEND); /* what lies below fades */
+            ev_rect all = {0.0, 0.0, layer->texture.width, layer->texture.height};
+            ev_layers_quad(layers, input->page, layer->rect, &layer->texture, all);
+        } else if (id == EV_LAYER_STAGE && input->sheet->stage == EV_STAGE_SPACE) {
             glEnable(GL_BLEND);
             show_inked_tiles(layers, input, layer);
         } else {
@@ -265,11 +272,21 @@ void ev_layers_show(ev_layers *layers, const ev_layers_input *input)
     }
 }
 
+/* Whether a hand gets at the layer: all but the list of actions is out of reach while that is
+ * there. */
+static bool is_in_reach(const ev_layers *layers, bool gallery, int id)
+{
+    if (layers->items[EV_LAYER_FINDER].boxes.count > 0) {
+        return id == EV_LAYER_FINDER;
+    }
+    return (id == EV_LAYER_GALLERY) == gallery;
+}
+
 const ev_box *ev_layers_hit(const ev_layers *layers, bool gallery, double x, double y,
                             ev_box_kind kind)
 {
     for (int id = 0; id < EV_LAYER_COUNT; ++id) {
-        if ((id == EV_LAYER_GALLERY) == gallery) {
+        if (is_in_reach(layers, gallery, id)) {
             const ev_box *box = ev_boxes_hit(&layers->items[id].boxes, x, y, kind);
             if (box) {
                 return box;
@@ -282,7 +299,7 @@ const ev_box *ev_layers_hit(const ev_layers *layers, bool gallery, double x, dou
 const ev_box *ev_layers_find(const ev_layers *layers, bool gallery, const char *name)
 {
     for (int id = 0; id < EV_LAYER_COUNT; ++id) {
-        if ((id == EV_LAYER_GALLERY) == gallery) {
+        if (is_in_reach(layers, gallery, id)) {
             const ev_box *box = ev_boxes_find(&layers->items[id].boxes, name);
             if (box) {
                 return box;

@@ -2,6 +2,7 @@
  * when something it shows has changed; hot boxes stay with the image they belong to. */
 #pragma once
 
+#include "draw/actions.h"
 #include "draw/drawer.h"
 #include "view/gl.h"
 #include "view/raster.h"
@@ -18,6 +19,7 @@ typedef enum {
     EV_LAYER_DRAWER,  /* in place of ledger and plates */
     EV_LAYER_SHOW,    /* showing mode: the whole page, alone */
     EV_LAYER_GALLERY, /* the whole page, alone */
+    EV_LAYER_FINDER,  /* over the whole page or the gallery, which it covers from the hand */
     EV_LAYER_COUNT
 } ev_layer_id;
 
@@ -32,6 +34,7 @@ typedef enum {
     EV_STAMP_FIELDS,
     EV_STAMP_STAGE, /* mode, zoom, pan, part in hand, loss map, camera */
     EV_STAMP_DRAWER,
+    EV_STAMP_FINDER,
     EV_STAMP_GALLERY,
     EV_STAMP_COUNT
 } ev_stamp_kind;
@@ -59,7 +62,8 @@ typedef struct ev_layers_input {
     const ev_gallery_item *items;
     int item_count;
     bool dark, showing;
-    const ev_drawer *drawer; /* NULL: closed */
+    const ev_drawer *drawer;   /* NULL: closed */
+    const ev_actions *actions; /* NULL: closed */
     const char *pointed;
     double scale; /* device pixels per page pixel */
     ev_crew *crew;

@@ -3,6 +3,7 @@
  * table of actions, strip.c the fields, gallery.c the scenes to choose from. */
 #pragma once
 
+#include "draw/actions.h"
 #include "draw/drawer.h"
 #include "view/controls.h"
 #include "view/fields.h"
@@ -77,6 +78,19 @@ typedef struct ev_drawer_hand {
     ev_drawer shown;                /* its scroll, editing and complaint are the drawer's own */
 } ev_drawer_hand;
 
+/* The list of actions, as it was when it was opened. */
+typedef struct ev_finder_words {
+    char key[16], words[80];
+} ev_finder_words;
+
+typedef struct ev_finder {
+    bool is_open;
+    ev_edit search;
+    ev_finder_words words[EV_ACTIONS_CAPACITY];
+    ev_action_entry items[EV_ACTIONS_CAPACITY];
+    ev_actions shown;
+} ev_finder;
+
 typedef struct ev_view {
     const ev_view_options *options;
     ev_diagnostics *diagnostics;
@@ -109,6 +123,7 @@ typedef struct ev_view {
     int editing; /* field being typed into, -1: none */
     ev_edit edit;
     ev_drawer_hand drawer;
+    ev_finder finder;
     bool fresh; /* a click has just opened it: a second one means nominal */
     char complaint[96];
     ev_drag drag;
@@ -167,6 +182,8 @@ typedef struct ev_act {
     void (*run)(ev_view *view);
 } ev_act;
 
+/* By its place in the table; NULL beyond the end. */
+const ev_act *ev_act_at(int index);
 const ev_act *ev_act_find(const char *name);
 /* The command of a key, NULL when it has none. */
 const ev_act *ev_act_of_key(SDL_Keycode key, Uint16 modifiers);
@@ -194,6 +211,15 @@ bool ev_drawer_click(ev_view *view, const char *name);
 /* drawer_lists.c: what a button "add.feed" or "copy.strut.0" does to a design, and the words for
  * undo. False when it cannot. */
 bool ev_lists_change(ev_design *design, const char *button, char words[EV_WORDS_CAPACITY]);
+
+/* finder.c; true of an input: the list of actions has taken it */
+void ev_finder_open(ev_view *view);
+void ev_finder_close(ev_view *view);
+const ev_actions *ev_finder_shown(ev_view *view); /* NULL: not there */
+bool ev_finder_press(ev_view *view, const ev_input *input);
+bool ev_finder_key(ev_view *view, const ev_input *input);
+bool ev_finder_text(ev_view *view, const char *text);
+bool ev_finder_click(ev_view *view, const char *name);
 
 /* gallery.c */
 void ev_gallery_load(ev_gallery *gallery, const char *folder);

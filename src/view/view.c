@@ -32,6 +32,7 @@ static void show_scene(ev_view *view)
     view->drag = (ev_drag){0};
     ev_showing_leave(view);
     ev_drawer_close(view);
+    ev_finder_close(view);
     view->asked = NULL;
     view->pointed[0] = view->notice[0] = '\0';
     view->dirty = true;

@@ -32,8 +32,8 @@ static float aperture_node(const ev_study *study, int row, int column, double be
     if (r > antenna->radius * (1.0 + beyond * step) || r < antenna->hole_radius)
         return NAN;
     ev_vec3 direction, sub_point, point = ev_main_point(antenna, antenna->offset + up, y);
-    double path = ev_aperture_path(antenna, study->feed, antenna->offset + up, y, &direction,
-                                   &sub_point);
+    double path =
+        ev_aperture_path(antenna, study->feed, antenna->offset + up, y, &direction, &sub_point);
     return (float)(path - ev_vec3_dot(budget->wanted, point) - budget->mean_path_error);
 }
 

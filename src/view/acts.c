@@ -239,12 +239,12 @@ static const struct {
     {SDLK_f, false, false, "fit"},      {SDLK_e, false, false, "detail"},
     {SDLK_b, false, false, "plate"},    {SDLK_d, false, false, "light"},
     {SDLK_w, false, false, "show"},     {SDLK_t, false, false, "settings"},
-    {SDLK_SLASH, false, false, "find"}, {SDLK_q, false, false, "quit"},
-    {SDLK_q, true, false, "quit"},
+    {SDLK_SLASH, false, false, "find"}, {SDLK_f, true, false, "find"},
+    {SDLK_q, false, false, "quit"},     {SDLK_q, true, false, "quit"},
 };
 
 static const char *const more_help[] = {
-    "Press / to find anything that can be done, by its words, with its key",
+    "Press / or Ctrl F to find anything that can be done, by its words, with its key",
     "Drag the yellow ring, the part itself or a tape; arrows nudge, Shift by ten, Alt by a tenth",
     "Click a value to type it (3/8 in); double-click puts it back to nominal",
     "Wheel zooms, drag moves the section or turns space; Shift or the right button moves space",

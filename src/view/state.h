@@ -1,6 +1,7 @@
 /* All that the window knows, in one place. Functions that act on it live in files named for what
  * they do: frame.c draws it, input.c feeds it, grab.c and drag.c move things, acts.c holds the
- * table of actions, strip.c the fields, gallery.c the scenes to choose from. */
+ * table of actions, strip.c the fields, gallery.c the scenes to choose from, showing.c, drawer.c
+ * and finder.c what comes over the page. */
 #pragma once
 
 #include "draw/actions.h"

@@ -15,7 +15,7 @@ static void test_choosing(void **state)
                  "expect feed.defocus 0 mm\n"
                  "key /\ntext undo\nkey Return\n" /* nothing is left to undo: it stays open */
                  "click search.actions\nkey Escape\n"
-                 "key /\nkey Down\nkey Down\nkey Up\nkey Escape\n"
+                 "key ctrl+f\nkey Down\nkey Down\nkey Up\nkey Escape\n"
                  "key /\ntext all settings\nkey Return\nsettle\npoint search.drawer\n"
                  "key Escape\nsettle\npoint plate.aperture\n");
 }

@@ -111,18 +111,21 @@ static void draw_wanted(ev_pen *pen, const ev_sheet *sheet, ev_rect plot, const 
     cairo_set_dash(pen->cairo, NULL, 0, 0.0);
 }
 
-/* Levels far below the plot are cut where they leave it: pixels beyond count for nothing. */
+/* What lies far from the plot is left out, or held at its edge: pixels beyond count for nothing,
+ * and dashes out there cost. */
 static void trace_levels(ev_pen *pen, const ev_plot_map *map, const ev_beam_curve *curve,
-                         const double *levels, double peak, double lowest)
+                         const double *levels, double peak)
 {
+    ev_rect region = pen->region;
+    double most = 1.5 * region.height / fabs(map->y_scale);
     bool is_down = false;
     for (int i = 0; i < EV_BEAM_CURVE_SAMPLES; ++i) {
         double level = levels[i] - peak, x, y;
-        if (isnan(level) || !isfinite(curve->angle[i])) {
+        ev_plot_to_page(map, curve->angle[i], fmin(fmax(level, -most), most), &x, &y);
+        if (isnan(level) || !(fabs(x - region.x) < 2.0 * region.width)) {
             is_down = false;
             continue;
         }
-        ev_plot_to_page(map, curve->angle[i], fmax(level, lowest), &x, &y);
         if (is_down)
             cairo_line_to(pen->cairo, x, y);
         else
@@ -142,12 +145,11 @@ static void draw_curve(ev_pen *pen, const ev_plot_map *map, const ev_beam_curve 
                        const double *levels, double peak, beam_stroke stroke)
 {
     static const double dashes[] = {3.5, 2.5};
-    double lowest = -1.5 * pen->region.height / fabs(map->y_scale);
     cairo_set_dash(pen->cairo, dashes, stroke.dashed ? 2 : 0, 0.0);
     cairo_set_line_join(pen->cairo, CAIRO_LINE_JOIN_ROUND);
     cairo_set_line_width(pen->cairo, stroke.width);
     ev_pen_colour(pen, stroke.colour, stroke.opacity);
-    trace_levels(pen, map, curve, levels, peak, lowest);
+    trace_levels(pen, map, curve, levels, peak);
     cairo_set_line_join(pen->cairo, CAIRO_LINE_JOIN_MITER);
     cairo_set_dash(pen->cairo, NULL, 0, 0.0);
 }

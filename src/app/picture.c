@@ -11,27 +11,50 @@
 
 enum { SECTION_RAYS = 100 };
 
-/* The Strip of a printed page: where the part stands and what it works with. */
+static void add_parameter(const ev_loaded *loaded, const char *address, ev_sheet *sheet)
+{
+    ev_parameter_ref ref;
+    ev_field *field = &sheet->fields[sheet->field_count];
+    if (!ev_parameter_find(&loaded->design, loaded->feed, address, &ref, NULL))
+        return;
+    snprintf(field->address, sizeof field->address, "%s", address);
+    snprintf(field->label, sizeof field->label, "%s", ref.parameter->label);
+    ev_parameter_format(&loaded->design, ref, field->digits, sizeof field->digits, field->unit,
+                        sizeof field->unit);
+    field->value = field->nominal = ev_parameter_get(&loaded->design, ref);
+    field->step = 1.0;
+    sheet->field_count++;
+}
+
+/* Where a part sits along an axis of its own, as the Detail and the window's Strip say it. */
+static void add_place(const ev_loaded *loaded, ev_part part, ev_part_axis axis, ev_sheet *sheet)
+{
+    ev_field *field = &sheet->fields[sheet->field_count++];
+    field->value = ev_part_place(&loaded->design, &loaded->antenna, part, loaded->feed, axis);
+    field->step = 1e-3;
+    snprintf(field->address, sizeof field->address, "%s.%s", ev_part_word(part),
+             ev_axis_word(axis));
+    snprintf(field->label, sizeof field->label, "%s %s",
+             part == EV_PART_FEED ? "Feed" : "Subreflector", ev_axis_word(axis));
+    ev_quantity_format(EV_QUANTITY_LENGTH, field->value, field->digits, sizeof field->digits,
+                       field->unit, sizeof field->unit);
+}
+
+/* The Strip of a printed page: where the parts stand and what they work with. */
 static void list_fields(const ev_loaded *loaded, ev_sheet *sheet)
 {
-    static const char *const single[] = {"feed.defocus", "feed.shift.x",    "feed.shift.y",
-                                         "frequency",    "feed.edge_taper", "main.surface_rms"};
-    static const char *const dual[] = {"sub.shift.z",  "sub.shift.x", "feed.defocus",
-                                       "feed.shift.x", "frequency",   "main.surface_rms"};
-    const char *const *addresses = loaded->antenna.dual ? dual : single;
-    for (int i = 0; i < EV_FIELD_CAPACITY; i++) {
-        ev_parameter_ref ref;
-        ev_field *field = &sheet->fields[sheet->field_count];
-        if (!ev_parameter_find(&loaded->design, loaded->feed, addresses[i], &ref, NULL))
-            continue;
-        snprintf(field->address, sizeof field->address, "%s", addresses[i]);
-        snprintf(field->label, sizeof field->label, "%s", ref.parameter->label);
-        ev_parameter_format(&loaded->design, ref, field->digits, sizeof field->digits, field->unit,
-                            sizeof field->unit);
-        field->value = field->nominal = ev_parameter_get(&loaded->design, ref);
-        field->step = 1.0;
-        sheet->field_count++;
+    if (loaded->antenna.dual) {
+        add_place(loaded, EV_PART_SUB, EV_AXIS_OUT, sheet);
+        add_place(loaded, EV_PART_SUB, EV_AXIS_UP, sheet);
     }
+    add_place(loaded, EV_PART_FEED, EV_AXIS_OUT, sheet);
+    add_place(loaded, EV_PART_FEED, EV_AXIS_UP, sheet);
+    if (!loaded->antenna.dual)
+        add_place(loaded, EV_PART_FEED, EV_AXIS_ACROSS, sheet);
+    add_parameter(loaded, "frequency", sheet);
+    if (!loaded->antenna.dual)
+        add_parameter(loaded, "feed.edge_taper", sheet);
+    add_parameter(loaded, "main.surface_rms", sheet);
 }
 
 static void fill_sheet(const ev_loaded *loaded, const ev_study *study, bool dark, ev_sheet *sheet)

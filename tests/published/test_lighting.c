@@ -122,6 +122,43 @@ static void test_balanis_example(void **state)
     assert_near(ev_fixture_budget(&design).gain_dbi, 48.6975, 5e-5);
 }
 
+/* A symmetric dual lights its aperture as a single dish of focal length M F would: P. Hannan, IRE
+ * Trans. AP-9, 1961. [memory] */
+static void test_equivalent_paraboloid(void **state)
+{
+    (void)state;
+    const ev_fixture fixtures[] = {EV_FIXTURE_CASSEGRAIN, EV_FIXTURE_GREGORIAN};
+    for (int i = 0; i < 2; i++) {
+        ev_design design = ev_fixture_design(fixtures[i]);
+        ev_antenna antenna;
+        ev_fixture_build(&design, &antenna);
+        ev_feed_budget dual = ev_fixture_budget(&design);
+        ev_feed_budget single = lit(design.feeds[0].exponent, antenna.layout.sub_half_angle);
+        assert_near(dual.power[EV_FATE_PAST_SUB], single.power[EV_FATE_PAST_MAIN], 1e-9);
+        assert_near(dual.efficiency.taper, single.efficiency.taper, 1e-9);
+        assert_near(dual.efficiency.phase, 1.0, 1e-9);
+    }
+}
+
+/* So does an offset dual whose axis is tilted to cancel cross-polarization (Y. Mizugutch et al.,
+ * "Offset dual reflector antenna", IEEE AP-S, 1976; W. Rusch et al., IEEE Trans. AP-38, 1990).
+ * [memory] The tilt of the example is given to 0.01 deg. */
+static void test_equivalent_paraboloid_of_an_offset_dual(void **state)
+{
+    (void)state;
+    ev_design design = ev_fixture_design(EV_FIXTURE_OFFSET_GREGORIAN);
+    ev_antenna antenna;
+    ev_fixture_build(&design, &antenna);
+    ev_feed_budget dual = ev_fixture_budget(&design);
+    ev_feed_budget single = lit(design.feeds[0].exponent, antenna.layout.sub_half_angle);
+    assert_near(dual.power[EV_FATE_PAST_SUB], single.power[EV_FATE_PAST_MAIN], 1e-5);
+    assert_near(dual.efficiency.taper, single.efficiency.taper, 1e-5);
+    assert_near(antenna.layout.equivalent_focal_length / 100.0,
+                0.25 / tan(0.5 * antenna.layout.sub_half_angle), 1e-4);
+    assert_near(antenna.layout.edge_space_loss_db,
+                -40.0 * log10(cos(0.5 * antenna.layout.sub_half_angle)), 1e-3);
+}
+
 /* Gain 4 pi A eta / lambda^2. [practice] 70 m station: efficiency 0.687 at 8420 MHz gives 74.18 dBi
  * (Richter and Slobin, TDA progress report, 1989) [seen]: what the program adds to 10 log10 of an
  * efficiency. */
@@ -161,6 +198,8 @@ int main(void)
         cmocka_unit_test(test_best_angle),
         cmocka_unit_test(test_best_edge_taper),
         cmocka_unit_test(test_balanis_example),
+        cmocka_unit_test(test_equivalent_paraboloid),
+        cmocka_unit_test(test_equivalent_paraboloid_of_an_offset_dual),
         cmocka_unit_test(test_seventy_metre_station),
         cmocka_unit_test(test_a_good_dish),
     };

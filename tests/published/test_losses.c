@@ -138,6 +138,23 @@ static double parabolic(double r)
     return 1.0 - r * r;
 }
 
+static double squared(double r)
+{
+    return pow(parabolic(r), 2.0);
+}
+
+static double on_pedestal(double r)
+{
+    double edge = pow(10.0, -0.5);
+    return edge + (1.0 - edge) * parabolic(r);
+}
+
+static double squared_on_pedestal(double r)
+{
+    double edge = pow(10.0, -0.5);
+    return edge + (1.0 - edge) * squared(r);
+}
+
 static ev_feed_budget with_lighting(double (*field)(double), double body, double strut_width)
 {
     ev_design design = ev_fixture_design(EV_FIXTURE_PRIME);
@@ -155,13 +172,16 @@ static ev_feed_budget with_lighting(double (*field)(double), double body, double
     return budget;
 }
 
-/* Beam of a round aperture: taper efficiency 1 (uniform), 0.75 (1 - r^2) (Silver 1949; Balanis ch.
- * 12). [computed] */
+/* Beam of a round aperture: taper efficiency 1 uniform, 0.75 for 1 - r^2, 0.5556 for its square, on
+ * a pedestal of -10 dB 0.9175 and 0.8769 (Silver 1949; Balanis ch. 12). [computed] */
 static void test_taper_of_round_apertures(void **state)
 {
     (void)state;
     assert_near(with_lighting(uniform, 0.0, 0.0).efficiency.taper, 1.0, 1e-6);
     assert_near(with_lighting(parabolic, 0.0, 0.0).efficiency.taper, 0.75, 1e-6);
+    assert_near(with_lighting(squared, 0.0, 0.0).efficiency.taper, 0.5556, 5e-5);
+    assert_near(with_lighting(on_pedestal, 0.0, 0.0).efficiency.taper, 0.9175, 5e-5);
+    assert_near(with_lighting(squared_on_pedestal, 0.0, 0.0).efficiency.taper, 0.8769, 5e-5);
 }
 
 /* Central disc d/D 0.1: uniform 0.0873 dB, 1 - r^2 0.1746 dB (null field). [computed] */

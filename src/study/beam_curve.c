@@ -6,8 +6,8 @@
 static double round_up(double value)
 {
     double step = pow(10.0, floor(log10(value)));
-    static const double parts[] = {1.0, 2.0, 4.0, 5.0, 10.0};
-    for (int i = 0; i < 5; i++)
+    static const double parts[] = {1.0, 2.0, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0};
+    for (int i = 0; i < 8; i++)
         if (parts[i] * step >= value * (1.0 - 1e-9))
             return parts[i] * step;
     return 10.0 * step;

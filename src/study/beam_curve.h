@@ -20,7 +20,7 @@ typedef struct ev_beam_curve {
 } ev_beam_curve;
 
 /* Half width that shows the main beam, about six sidelobes each side and the wanted direction,
- * rounded to a 1-2-5 step (rad). */
+ * rounded up to a plain number of degrees (rad). */
 double ev_beam_curve_span(const ev_antenna *antenna, int feed);
 
 void ev_beam_curve_compute(const ev_antenna *antenna, int feed, double phi, double span,

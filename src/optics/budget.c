@@ -158,6 +158,9 @@ static void sum_power(account *sum, ev_feed_budget *out)
         power[fate] = fmax(power[fate], 0.0); /* rounding below an empty share */
         lost += power[fate];
     }
+    /* where nothing is left, the quadrature's last digits may lose a hair more than all */
+    for (int fate = EV_FATE_APERTURE + 1; fate < EV_FATE_COUNT && lost > 1.0; fate++)
+        power[fate] /= lost;
     power[EV_FATE_APERTURE] = fmax(1.0 - lost, 0.0);
     double spill = power[EV_FATE_PAST_SUB] + power[EV_FATE_PAST_MAIN];
     out->noise = (ev_noise){NAN, NAN, NAN, NAN};

@@ -154,6 +154,15 @@ static void test_shares_that_were_wrong_once(void **state)
     }
 }
 
+/* And one whose subreflector shadows all of a small dish: the shares summed to 1 + 5e-11. */
+static void test_nothing_left(void **state)
+{
+    (void)state;
+    static trial at;
+    draw(8, 8649, &at);
+    assert_true(powers_sum_to_one(&at));
+}
+
 /* Unit normal of the sub where it sits, from its foci. */
 static ev_vec3 sub_normal(const ev_antenna *antenna, ev_vec3 point)
 {
@@ -379,6 +388,7 @@ int main(void)
         cmocka_unit_test(test_powers_and_ranges),
         cmocka_unit_test(test_shares_integrated_another_way),
         cmocka_unit_test(test_shares_that_were_wrong_once),
+        cmocka_unit_test(test_nothing_left),
         cmocka_unit_test(test_threads_change_no_bit),
     };
     print_message("%d antennas, EV_SEED=%llu\n", ANTENNAS, (unsigned long long)seed());

@@ -42,8 +42,8 @@ ev_launch ev_feed_launch(const ev_antenna *antenna, int index, ev_vec3 direction
 {
     const ev_feed *feed = &antenna->feeds[index];
     double ux = ev_vec3_dot(direction, feed->ex), uy = ev_vec3_dot(direction, feed->ey);
-    double uz = ev_vec3_dot(direction, feed->axis), across = hypot(ux, uy);
-    ev_pattern_level level = ev_pattern_at(&feed->pattern, atan2(across, uz));
+    double uz = ev_vec3_dot(direction, feed->axis), across = sqrt(ux * ux + uy * uy);
+    ev_pattern_level level = ev_pattern_toward(&feed->pattern, uz, across);
     ev_vec3 lx = carry(feed->ex, feed->axis, direction),
             ly = carry(feed->ey, feed->axis, direction);
     double _Complex weight[2];

@@ -117,7 +117,9 @@ static double margin(const void *context, double phi, double r, int *which)
         take_least(&least, which, feed->pattern.end - ev_vec3_angle(direction, feed->axis), 1);
     if (cut->inside && antenna->dual)
         take_least(&least, which, ev_sub_inside(&antenna->sub, sub_point) + 1e-10, 2);
-    ev_vec3 up = ev_antenna_up(antenna);
+    ev_vec3 up = {0.0, 0.0, 1.0};
+    if (cut->ground || cut->landing)
+        up = ev_antenna_up(antenna);
     if (cut->ground)
         take_least(&least, which, -ev_vec3_dot(direction, up), 3);
     if (cut->landing) {

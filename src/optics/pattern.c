@@ -99,6 +99,14 @@ ev_pattern_level ev_pattern_at(const ev_pattern *pattern, double theta)
     return (ev_pattern_level){level, level, 0.0};
 }
 
+ev_pattern_level ev_pattern_toward(const ev_pattern *pattern, double along, double across)
+{
+    if (pattern->kind != EV_PATTERN_COS_POWER)
+        return ev_pattern_at(pattern, atan2(across, along));
+    double level = along > 0.0 ? pattern->norm * pow(along, pattern->exponent) : 0.0;
+    return (ev_pattern_level){level, level, 0.0};
+}
+
 /* Half the integral of the level over [from, to] with sin(theta): a share of the sphere. Tables
  * are split at their entries, where the cubic changes. */
 static double piece_share(const ev_pattern *pattern, const ev_gauss *gauss, double from, double to)

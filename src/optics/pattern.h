@@ -50,6 +50,9 @@ typedef struct ev_pattern_level {
 
 ev_pattern_level ev_pattern_at(const ev_pattern *pattern, double theta);
 
+/* The same by the components of a unit direction along the axis and across it: what rays have. */
+ev_pattern_level ev_pattern_toward(const ev_pattern *pattern, double along, double across);
+
 /* Power within theta of the axis as a share of the whole, [0, 1] (mean of E and H planes). */
 double ev_pattern_share_within(const ev_pattern *pattern, double theta);
 

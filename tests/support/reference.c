@@ -60,15 +60,14 @@ static ev_vec3 main_point(const ev_reference *r, double x, double y)
 }
 
 /* The sub's point on the line from the prime focus to a main point (its far side: ellipsoid). */
-static ev_vec3 nominal_sub_point(const ev_reference *r, double x)
+static ev_vec3 nominal_sub_point(const ev_reference *r, double x, double y)
 {
-    ev_vec3 d = ev_vec3_unit(ev_vec3_sub(main_point(r, x, 0.0), r->prime));
-    double t[2];
+    ev_vec3 d = ev_vec3_unit(ev_vec3_sub(main_point(r, x, y), r->prime));
+    double t[2] = {NAN, NAN};
     if (r->ellipsoid)
         d = ev_vec3_scale(-1.0, d);
     int count = cross_sub(r, r->prime, d, t);
-    double along = count == 2 && t[0] < 0.0 ? t[1] : t[0];
-    return count > 0 ? ev_vec3_along(r->prime, along, d) : ev_vec3_make(NAN, NAN, NAN);
+    return ev_vec3_along(r->prime, count == 2 && t[0] < 0.0 ? t[1] : t[0], d);
 }
 
 static void make_sub(const ev_sub_design *sub, ev_reference *r)
@@ -77,8 +76,8 @@ static void make_sub(const ev_sub_design *sub, ev_reference *r)
     r->ellipsoid = sub->shape == EV_SUB_ELLIPSOID;
     r->other = ev_vec3_along(r->prime, -sub->interfocal, line);
     r->major = sub->interfocal / sub->eccentricity;
-    ev_vec3 top = nominal_sub_point(r, r->offset + r->radius);
-    ev_vec3 bottom = nominal_sub_point(r, r->offset - r->radius);
+    ev_vec3 top = nominal_sub_point(r, r->offset + r->radius, 0.0);
+    ev_vec3 bottom = nominal_sub_point(r, r->offset - r->radius, 0.0);
     ev_vec3 chord = ev_vec3_sub(top, bottom);
     r->rim_centre = ev_vec3_scale(0.5, ev_vec3_add(top, bottom));
     r->rim_long = ev_vec3_unit(chord);
@@ -111,9 +110,9 @@ static void make_feed(const ev_feed_design *feed, ev_reference *r)
 {
     ev_vec3 focus = r->dual ? r->other : r->prime, turn[3];
     double top_x = r->offset + r->radius, bottom_x = r->offset - r->radius;
-    ev_vec3 top = r->dual ? nominal_sub_point(r, top_x) : main_point(r, top_x, 0.0);
-    ev_vec3 bottom = r->dual ? nominal_sub_point(r, bottom_x) : main_point(r, bottom_x, 0.0);
-    ev_vec3 middle = r->dual ? nominal_sub_point(r, r->offset) : main_point(r, r->offset, 0.0);
+    ev_vec3 top = r->dual ? nominal_sub_point(r, top_x, 0.0) : main_point(r, top_x, 0.0);
+    ev_vec3 bottom = r->dual ? nominal_sub_point(r, bottom_x, 0.0) : main_point(r, bottom_x, 0.0);
+    ev_vec3 middle = r->dual ? nominal_sub_point(r, r->offset, 0.0) : main_point(r, r->offset, 0.0);
     ev_vec3 to_top = ev_vec3_unit(ev_vec3_sub(top, focus));
     ev_vec3 to_bottom = ev_vec3_unit(ev_vec3_sub(bottom, focus));
     r->half_extent = 0.5 * ev_vec3_angle(to_top, to_bottom);
@@ -250,14 +249,8 @@ bool ev_reference_trace(const ev_reference *r, ev_vec3 direction, ev_reference_r
 
 static ev_vec3 first_guess(const ev_reference *r, double x, double y)
 {
-    ev_vec3 p = main_point(r, x, y), d = ev_vec3_unit(ev_vec3_sub(p, r->prime));
-    double t[2];
-    if (r->ellipsoid)
-        d = ev_vec3_scale(-1.0, d);
-    int count = cross_sub(r, r->prime, d, t);
-    double along = count == 2 && t[0] < 0.0 ? t[1] : t[0];
-    ev_vec3 q = count > 0 ? ev_vec3_along(r->prime, along, d) : r->rim_centre;
-    return ev_vec3_unit(ev_vec3_sub(place(r, q), r->feed));
+    ev_vec3 q = place(r, nominal_sub_point(r, x, y));
+    return ev_vec3_unit(ev_vec3_sub(q, r->feed));
 }
 
 bool ev_reference_aim(const ev_reference *r, double x, double y, ev_vec3 *direction,

@@ -46,8 +46,7 @@ typedef struct ev_reference_ray {
 
 bool ev_reference_trace(const ev_reference *reference, ev_vec3 direction, ev_reference_ray *ray);
 
-/* Direction from the feed whose ray lands over (x, y); `direction` holds a first guess (or zero)
- * and gets the result. */
+/* Direction from the feed whose ray lands over (x, y), and that ray. False when none is found. */
 bool ev_reference_aim(const ev_reference *reference, double x, double y, ev_vec3 *direction,
                       ev_reference_ray *ray);
 

@@ -55,7 +55,7 @@ build_fuzzer() {
 # Leaks are looked for in the tests on the corpus; the YAML library has one of its own on odd keys.
 fuzz() {
     rm -rf "$builds/corpus" && mkdir -p "$builds/corpus" &&
-        "$builds/fuzz/tests/fuzz_scene" -max_total_time=60 -max_len=8192 -timeout=20 -detect_leaks=0 \
+        ASAN_OPTIONS=detect_leaks=0 "$builds/fuzz/tests/fuzz_scene" -max_total_time=60 -max_len=8192 -timeout=20 \
             -artifact_prefix="$builds/" "$builds/corpus" "$top/tests/scene/corpus"
 }
 
